@@ -1,0 +1,1 @@
+export const correctionIds = ['max-statistic', 'cluster-mass', 'benjamini-hochberg'] as const;

@@ -1,0 +1,1 @@
+export const nullIds = ['labels', 'trial-order', 'time-shift'] as const;

@@ -1,0 +1,149 @@
+import { z } from 'zod';
+import { measureIds } from './measure/registry';
+import { nullIds } from './null/registry';
+import { correctionIds } from './correct/registry';
+
+/** Limits that keep a run inside a laptop's memory; each error names them. */
+export const planLimits = {
+  sites: 512,
+  frequencies: 200,
+  times: 2000,
+  permutations: 100_000,
+  features: 6_000_000,
+} as const;
+
+const finite = z.number();
+const hz = finite.positive('must be above 0 Hz');
+const label = z.string().trim().min(1).max(80);
+const sha256 = z.string().regex(/^[0-9a-f]{64}$/, 'must be 64 hexadecimal digits');
+
+/** Which moments of a recording become epochs of a condition. */
+export const ruleSchema = z.discriminatedUnion('kind', [
+  z.strictObject({
+    kind: z.literal('events'),
+    recording: sha256,
+    /** An event is taken when its label is one of these, exactly. */
+    labels: z.array(label).min(1, 'choose at least one event label'),
+  }),
+  z
+    .strictObject({
+      kind: z.literal('even'),
+      recording: sha256,
+      fromS: finite.nonnegative(),
+      toS: finite.nonnegative(),
+      everyS: finite.positive('must be above 0 s'),
+    })
+    .refine((rule) => rule.toS >= rule.fromS, {
+      path: ['toS'],
+      message: 'must not be before the start of the span',
+    }),
+]);
+
+const conditionSchema = z.strictObject({
+  name: label,
+  rules: z.array(ruleSchema).min(1, 'needs at least one rule').max(50),
+});
+
+export const pairsSchema = z.discriminatedUnion('kind', [
+  z.strictObject({ kind: z.literal('all') }),
+  z.strictObject({ kind: z.literal('within'), sites: z.array(label).min(2) }),
+  z.strictObject({
+    kind: z.literal('between'),
+    first: z.array(label).min(1),
+    second: z.array(label).min(1),
+  }),
+  z.strictObject({ kind: z.literal('from'), site: label }),
+]);
+
+export const frequenciesSchema = z.discriminatedUnion('kind', [
+  z.strictObject({
+    kind: z.literal('grid'),
+    fromHz: hz,
+    toHz: hz,
+    steps: z.int().min(1).max(planLimits.frequencies),
+    spacing: z.enum(['log', 'linear']),
+  }),
+  z.strictObject({
+    kind: z.literal('list'),
+    hz: z.array(hz).min(1).max(planLimits.frequencies),
+  }),
+]);
+
+export const planSchema = z.strictObject({
+  format: z.literal('nullwright-plan/1'),
+  /** The question in words. */
+  question: z.string().trim().min(1, 'say in words what is asked').max(2000),
+  /** A code, never a name. */
+  participant: label,
+  recordings: z
+    .array(z.strictObject({ sha256, name: z.string().min(1).max(255) }))
+    .min(1, 'choose at least one recording')
+    .max(50),
+  a: conditionSchema,
+  b: conditionSchema,
+  epoch: z
+    .strictObject({
+      /** The window around each event, seconds; both ends included. */
+      fromS: finite.min(-60).max(600),
+      toS: finite.min(-60).max(600),
+      /** Removed from each epoch with its guard. */
+      detrend: z.enum(['mean', 'line']),
+      reference: z.discriminatedUnion('kind', [
+        z.strictObject({ kind: z.literal('recorded') }),
+        z.strictObject({ kind: z.literal('average') }),
+        z.strictObject({ kind: z.literal('channels'), sites: z.array(label).min(1) }),
+      ]),
+      reject: z.strictObject({
+        /** Left out when the peak-to-peak of any analysed site is above this. */
+        aboveUv: finite.positive().nullable(),
+        /** Left out when the peak-to-peak of any analysed site is below this. */
+        flatBelowUv: finite.positive().nullable(),
+        /** Events marked by hand: recording and onset in seconds. */
+        byHand: z.array(z.strictObject({ recording: sha256, onsetS: finite })),
+      }),
+    })
+    .refine((epoch) => epoch.toS > epoch.fromS, {
+      path: ['toS'],
+      message: 'must be after the start of the window',
+    }),
+  sites: z
+    .array(label)
+    .min(2, 'choose at least two sites')
+    .max(planLimits.sites)
+    .refine((sites) => new Set(sites).size === sites.length, { message: 'names a site twice' }),
+  pairs: pairsSchema,
+  phase: z.strictObject({
+    method: z.literal('morlet'),
+    frequencies: frequenciesSchema,
+    /** Log-spaced over the frequencies from the first to the second; equal numbers: fixed. */
+    cycles: z.strictObject({ from: finite.min(1).max(50), to: finite.min(1).max(50) }),
+  }),
+  times: z
+    .strictObject({ fromS: finite, toS: finite, stepS: finite.positive('must be above 0 s') })
+    .refine((times) => times.toS >= times.fromS, {
+      path: ['toS'],
+      message: 'must not be before the first time',
+    }),
+  measure: z.enum(measureIds),
+  null: z.enum(nullIds),
+  test: z.strictObject({
+    tail: z.enum(['two-sided', 'a-greater', 'b-greater']),
+    alpha: finite.gt(0).max(0.5),
+    permutations: z.int().min(19).max(planLimits.permutations),
+    /** The first carries the claim; the page may move between the ones named here only. */
+    corrections: z
+      .array(z.enum(correctionIds))
+      .min(1, 'choose at least one correction')
+      .refine((list) => new Set(list).size === list.length, { message: 'names a correction twice' }),
+    /** |z| above which points join a cluster. */
+    clusterFormingZ: finite.positive().max(20),
+    seed: z.string().trim().min(1, 'give a seed, any text').max(80),
+  }),
+});
+
+/** A contrast's definition, whole: what is locked, hashed and run. */
+export type Plan = z.infer<typeof planSchema>;
+export type Rule = z.infer<typeof ruleSchema>;
+export type PairRule = z.infer<typeof pairsSchema>;
+export type FrequencyRule = z.infer<typeof frequenciesSchema>;
+export type Tail = Plan['test']['tail'];

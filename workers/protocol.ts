@@ -1,0 +1,78 @@
+import type { Axes, Epoch, LostEpoch, Outcome, PairBlock, RecordingFacts } from './engine/types';
+import type { Plan } from './engine/plan';
+
+/**
+ * What the page and an engine worker say to each other, over Comlink. The worker keeps no
+ * state between calls, so that any worker can do any part, in any order, again.
+ */
+
+/** A recording's facts with its bytes (Blobs are handed over without copying). */
+export interface RecordingInput {
+  facts: RecordingFacts;
+  blob: Blob;
+}
+
+/** Unit phasors of all kept epochs, shared by all workers; the engine states the layout. */
+export interface SharedPhases {
+  /** Float32, real and imaginary parts: see workers/engine/phase/layout.ts. */
+  buffer: SharedArrayBuffer;
+  epochsA: number;
+  epochsB: number;
+}
+
+/** What each permutation shuffles, drawn once a run and shared; the null model states the layout. */
+export interface SharedDraws {
+  buffer: SharedArrayBuffer;
+}
+
+export interface RunShape {
+  axes: Axes;
+  phasesByteLength: number;
+  drawsByteLength: number;
+}
+
+export interface EngineWorkerApi {
+  /** Reads the samples of these epochs and says which break a limit of the plan. */
+  screen(plan: Plan, recordings: RecordingInput[], epochs: Epoch[]): Promise<LostEpoch[]>;
+  /**
+   * Writes the phases of `epochs[from..to)` into the shared buffer. `epochs` are the kept ones,
+   * all of A before all of B.
+   */
+  phases(
+    plan: Plan,
+    recordings: RecordingInput[],
+    epochs: Epoch[],
+    range: { from: number; to: number },
+    shared: SharedPhases,
+  ): Promise<void>;
+  /** Draws permutations `from..to)`. */
+  draws(
+    plan: Plan,
+    counts: { epochsA: number; epochsB: number; axes: Axes },
+    range: { from: number; to: number },
+    shared: SharedDraws,
+  ): Promise<void>;
+  /** All permutations of pairs `from..to)`; `onPair` (a Comlink proxy) hears of each pair done. */
+  pairs(
+    plan: Plan,
+    axes: Axes,
+    range: { from: number; to: number },
+    phases: SharedPhases,
+    draws: SharedDraws,
+    onPair: (pairsDone: number) => void,
+  ): Promise<PairBlock>;
+  /** Phase angles of the kept points as bytes [site][epoch][frequency][time], 256 to the turn. */
+  phaseBytes(plan: Plan, axes: Axes, phases: SharedPhases): Promise<Uint8Array>;
+  /** Merges the blocks and draws the conclusions. */
+  conclude(
+    plan: Plan,
+    axes: Axes,
+    counts: { epochsA: number; epochsB: number },
+    blocks: PairBlock[],
+  ): Promise<{ maps: PairBlock; outcome: Outcome }>;
+  /** Seconds a pair and permutation cost here for this plan's sizes, measured on a small sample. */
+  calibrate(
+    plan: Plan,
+    counts: { epochsA: number; epochsB: number; axes: Axes },
+  ): Promise<{ secondsPerPair: number; secondsPerEpoch: number }>;
+}
