@@ -134,7 +134,9 @@ export const planSchema = z.strictObject({
     corrections: z
       .array(z.enum(correctionIds))
       .min(1, 'choose at least one correction')
-      .refine((list) => new Set(list).size === list.length, { message: 'names a correction twice' }),
+      .refine((list) => new Set(list).size === list.length, {
+        message: 'names a correction twice',
+      }),
     /** |z| above which points join a cluster. */
     clusterFormingZ: finite.positive().max(20),
     seed: z.string().trim().min(1, 'give a seed, any text').max(80),

@@ -50,7 +50,8 @@ export interface Epoch {
   sample: number;
 }
 
-export type LossReason = 'guard-leaves-recording' | 'crosses-gap' | 'above-limit' | 'flat' | 'by-hand';
+export type LossReason =
+  'guard-leaves-recording' | 'crosses-gap' | 'above-limit' | 'flat' | 'by-hand';
 
 /** An epoch that was left out, and why. `site` and `valueUv` say which site broke a limit. */
 export interface LostEpoch {

@@ -41,9 +41,12 @@ export function readConfig(env: Record<string, string | undefined>): Config {
   const parsed = schema.safeParse(env);
   if (!parsed.success) {
     const lines = parsed.error.issues.map(
-      (issue) => `  ${issue.path.join('.')} ${issue.message} (got: ${env[String(issue.path[0])] ?? 'nothing'})`,
+      (issue) =>
+        `  ${issue.path.join('.')} ${issue.message} (got: ${env[String(issue.path[0])] ?? 'nothing'})`,
     );
-    throw new Error(`Configuration is wrong:\n${lines.join('\n')}\nSee README.md, "Configuration".`);
+    throw new Error(
+      `Configuration is wrong:\n${lines.join('\n')}\nSee README.md, "Configuration".`,
+    );
   }
   const values = parsed.data;
   return {

@@ -11,7 +11,9 @@ export function bytesOf(buffer: Uint8Array): ByteSource {
     read(offset, length) {
       if (offset < 0 || length < 0 || offset + length > buffer.length) {
         return Promise.reject(
-          new RangeError(`bytes ${offset} to ${offset + length} leave a source of ${buffer.length}`),
+          new RangeError(
+            `bytes ${offset} to ${offset + length} leave a source of ${buffer.length}`,
+          ),
         );
       }
       return Promise.resolve(buffer.subarray(offset, offset + length));

@@ -21,7 +21,10 @@ export function allow(event: { locals: App.Locals; url: URL }, action: Action): 
     redirect(303, `/sign-in?next=${encodeURIComponent(next)}`);
   }
   if (!member) {
-    error(403, { code: 'no-team', message: 'You belong to no team yet. Ask a lab lead to invite you.' });
+    error(403, {
+      code: 'no-team',
+      message: 'You belong to no team yet. Ask a lab lead to invite you.',
+    });
   }
   if (!may(member.role, action)) {
     error(403, {

@@ -18,7 +18,13 @@ export const actions = [
 
 export type Action = (typeof actions)[number];
 
-const viewer: Action[] = ['team.read', 'study.read', 'recording.read', 'contrast.read', 'result.read'];
+const viewer: Action[] = [
+  'team.read',
+  'study.read',
+  'recording.read',
+  'contrast.read',
+  'result.read',
+];
 const statistician: Action[] = [...viewer, 'recording.download'];
 const researcher: Action[] = [
   ...statistician,
