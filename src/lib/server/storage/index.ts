@@ -1,4 +1,7 @@
+import { join } from 'node:path';
 import type { Readable } from 'node:stream';
+import { config } from '../config';
+import { fileStorage } from './file-storage';
 
 /**
  * Where large bytes live (recordings, maps). Keys are paths like `recordings/ab/abcdef...`;
@@ -15,3 +18,6 @@ export interface Storage {
   exists(key: string): Promise<boolean>;
   remove(key: string): Promise<void>;
 }
+
+/** The application's storage. Scripts outside the server make their own with `fileStorage`. */
+export const storage: Storage = fileStorage(join(config.dataDir, 'storage'));
