@@ -1,16 +1,27 @@
-import { promises as fs } from 'node:fs';
-import path from 'node:path';
-import { fileURLToPath, pathToFileURL } from 'node:url';
-import { FileMigrationProvider, Migrator } from 'kysely';
+import { readdir } from 'node:fs/promises';
+import { pathToFileURL } from 'node:url';
+import { type Migration, type MigrationProvider, Migrator } from 'kysely';
 import { connect } from '../src/lib/server/database/connect';
 
-const migrationFolder = fileURLToPath(new URL('../migrations', import.meta.url));
+const migrationFolder = new URL('../migrations/', import.meta.url);
+
+// Imported from here, not from inside the package, so that whatever runs this file (tsx, Vitest)
+// also reads the migrations' TypeScript.
+const provider: MigrationProvider = {
+  async getMigrations() {
+    const names = (await readdir(migrationFolder)).filter((name) => name.endsWith('.ts')).sort();
+    const entries = names.map(async (name): Promise<[string, Migration]> => {
+      const address = new URL(name, migrationFolder).href;
+      return [name.slice(0, -3), (await import(/* @vite-ignore */ address)) as Migration];
+    });
+    return Object.fromEntries(await Promise.all(entries));
+  },
+};
 
 /** Brings the database to the newest migration; throws the first error, loudly. */
 export async function migrateToLatest(databaseUrl: string): Promise<string[]> {
   const { db } = connect(databaseUrl);
   try {
-    const provider = new FileMigrationProvider({ fs, path, migrationFolder });
     const { error, results } = await new Migrator({ db, provider }).migrateToLatest();
     if (error) throw error instanceof Error ? error : new Error(String(error));
     return (results ?? []).map((result) => result.migrationName);
