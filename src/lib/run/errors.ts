@@ -1,0 +1,30 @@
+/** What can go wrong on the browser's side of a run; the page words the remedy by the code. */
+export type RunErrorCode =
+  | 'not-isolated'
+  | 'network'
+  | 'recording-missing'
+  | 'recording-changed'
+  | 'no-epochs'
+  | 'engine'
+  | 'worker-crashed'
+  | 'refused'
+  | 'cancelled';
+
+export class RunError extends Error {
+  override readonly name = 'RunError';
+
+  constructor(
+    readonly code: RunErrorCode,
+    message: string,
+    options?: ErrorOptions,
+  ) {
+    super(message, options);
+  }
+}
+
+/** Any thrown value as a RunError; what carries no code of ours came from the engine. */
+export function asRunError(thrown: unknown): RunError {
+  if (thrown instanceof RunError) return thrown;
+  const message = thrown instanceof Error ? thrown.message : String(thrown);
+  return new RunError('engine', message, { cause: thrown });
+}
