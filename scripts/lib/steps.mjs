@@ -1,0 +1,110 @@
+import { spawn, spawnSync } from 'node:child_process';
+import { createHash } from 'node:crypto';
+import { existsSync, readdirSync, readFileSync, statSync, writeFileSync } from 'node:fs';
+import path from 'node:path';
+import { root } from './root.mjs';
+
+/** Runs a program of the project's packages to its end; throws when it fails. */
+export function runTool(name, args, env = {}) {
+  const done = spawnSync(path.join(root, 'node_modules', '.bin', name), args, {
+    cwd: root,
+    stdio: 'inherit',
+    env: { ...process.env, ...env },
+  });
+  if (done.status !== 0) throw new Error(`${name} ${args.join(' ')} failed; see above.`);
+}
+
+export function migrate(databaseUrl) {
+  runTool('tsx', ['scripts/migrate.ts'], { DATABASE_URL: databaseUrl });
+}
+
+/** Fills an empty database with the demo laboratory; does nothing where it stands already. */
+export function seedDemo(env) {
+  const done = spawnSync(process.execPath, ['scripts/seed-demo.mjs'], {
+    cwd: root,
+    stdio: 'inherit',
+    env: { ...process.env, ...env },
+  });
+  if (done.status !== 0) throw new Error('Seeding the demo failed; see above.');
+}
+
+const sources = [
+  'src',
+  'static',
+  'workers',
+  'scripts/kernels',
+  'package-lock.json',
+  'svelte.config.js',
+  'vite.config.ts',
+  'tailwind.config.js',
+  'tsconfig.json',
+];
+
+function* filesBelow(place) {
+  if (!existsSync(place)) return;
+  if (statSync(place).isFile()) yield place;
+  else for (const name of readdirSync(place).sort()) yield* filesBelow(path.join(place, name));
+}
+
+function sourceHash() {
+  const hash = createHash('sha256');
+  for (const source of sources) {
+    for (const file of filesBelow(path.join(root, source))) {
+      hash.update(path.relative(root, file)).update(readFileSync(file));
+    }
+  }
+  return hash.digest('hex');
+}
+
+/** Builds the application unless the last build came from the same sources. */
+export function ensureBuild() {
+  const stamp = path.join(root, 'build', '.source-hash');
+  const wanted = sourceHash();
+  if (existsSync(stamp) && readFileSync(stamp, 'utf8') === wanted) return;
+  console.log('building');
+  runTool('vite', ['build', '--logLevel', 'warn']);
+  writeFileSync(stamp, wanted);
+}
+
+/** Starts the built application and resolves once it answers its health check. */
+export async function serve(env, { quiet = false } = {}) {
+  const child = spawn(process.execPath, ['build/index.js'], {
+    cwd: root,
+    stdio: ['ignore', quiet ? 'ignore' : 'inherit', 'inherit'],
+    // Its own process group: Ctrl+C reaches the script alone, which ends both servers in order.
+    detached: true,
+    env: { ...process.env, ...env },
+  });
+  const health = `http://${env.HOST}:${env.PORT}/api/health`;
+  await answers(health, child);
+  return child;
+}
+
+async function answers(url, child) {
+  const deadline = Date.now() + 60_000;
+  while (Date.now() < deadline) {
+    if (child.exitCode !== null) throw new Error('The server ended while it started; see above.');
+    try {
+      const response = await fetch(url);
+      if (response.ok) return;
+    } catch {
+      // Not listening yet.
+    }
+    await new Promise((resolve) => setTimeout(resolve, 100));
+  }
+  child.kill();
+  throw new Error(`No answer from ${url} within 60 s.`);
+}
+
+/** Asks a server to end, waits for it, and insists after ten seconds. */
+export function endServer(child) {
+  return new Promise((resolve) => {
+    if (child.exitCode !== null || child.signalCode !== null) return resolve();
+    const insist = setTimeout(() => child.kill('SIGKILL'), 10_000);
+    child.once('exit', () => {
+      clearTimeout(insist);
+      resolve();
+    });
+    child.kill('SIGTERM');
+  });
+}
