@@ -1,0 +1,1 @@
+export { createContrast, renameContrast, type Named } from './contrasts';
