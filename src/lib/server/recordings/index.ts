@@ -1,0 +1,2 @@
+export { recordingFacts, type RecordingSelection } from './facts';
+export { listRecordings, type ListedRecording } from './list';
