@@ -51,17 +51,18 @@ function makeFolder(folder) {
  */
 function clusterFolder(dataDir) {
   const wanted = path.join(dataDir, 'postgres');
-  if (existsSync(wanted)) return wanted;
   mkdirSync(dataDir, { recursive: true });
   if (reachable(dataDir)) {
-    makeFolder(wanted);
-  } else {
-    const name = createHash('sha256').update(dataDir).digest('hex').slice(0, 12);
-    const elsewhere = `/var/lib/nullwright-${name}`;
-    makeFolder(elsewhere);
-    symlinkSync(elsewhere, wanted);
+    if (!existsSync(wanted)) makeFolder(wanted);
+    return wanted;
   }
-  return wanted;
+  const name = createHash('sha256').update(dataDir).digest('hex').slice(0, 12);
+  const elsewhere = `/var/lib/nullwright-${name}`;
+  if (!existsSync(elsewhere)) makeFolder(elsewhere);
+  // Only a signpost for people: the server is given the true path.
+  rmSync(wanted, { force: true });
+  symlinkSync(elsewhere, wanted);
+  return elsewhere;
 }
 
 function password(dataDir) {
