@@ -67,6 +67,8 @@ export async function up(db: Kysely<unknown>): Promise<void> {
       failure text,
       started_by uuid not null references person (id),
       started_at timestamptz not null default now(),
+      -- The browser's last word of it: an old one means that its page was closed.
+      heard_at timestamptz not null default now(),
       finished_at timestamptz,
       constraint run_team_id_key unique (team_id, id),
       constraint run_finished_whole check (
@@ -169,12 +171,34 @@ export async function up(db: Kysely<unknown>): Promise<void> {
       constraint stored_map_run_name_key unique (run_id, name),
       foreign key (team_id, run_id) references run (team_id, id)
     );
+
+    -- What a finished run found is as immutable as the run itself.
+    create function refuse_finished_part() returns trigger language plpgsql as $$
+    declare
+      part_of uuid := case when tg_op = 'INSERT' then new.run_id else old.run_id end;
+    begin
+      if exists (select from run where id = part_of and state = 'finished') then
+        raise exception '% of run % is finished and cannot change', tg_table_name, part_of
+          using errcode = 'integrity_constraint_violation';
+      end if;
+      if tg_op = 'DELETE' then return old; end if;
+      return new;
+    end $$;
+    create trigger null_summary_immutable before insert or update or delete on null_summary
+      for each row execute function refuse_finished_part();
+    create trigger cluster_immutable before insert or update or delete on cluster
+      for each row execute function refuse_finished_part();
+    create trigger edge_immutable before insert or update or delete on edge
+      for each row execute function refuse_finished_part();
+    create trigger stored_map_immutable before insert or update or delete on stored_map
+      for each row execute function refuse_finished_part();
   `.execute(db);
 }
 
 export async function down(db: Kysely<unknown>): Promise<void> {
   await sql`
     drop table stored_map, edge, cluster, null_summary, run, plan, contrast;
+    drop function refuse_finished_part();
     drop function refuse_finished_run();
     drop function refuse_locked_plan();
   `.execute(db);

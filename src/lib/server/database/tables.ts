@@ -179,6 +179,7 @@ interface RunTable {
   failure: string | null;
   startedBy: string;
   startedAt: CreatedAt;
+  heardAt: ColumnType<Date, never, Date>;
   finishedAt: Date | null;
 }
 
