@@ -6,6 +6,24 @@ const config = {
   preprocess: vitePreprocess(),
   kit: {
     adapter: adapter(),
+    csp: {
+      mode: 'auto',
+      directives: {
+        'default-src': ['self'],
+        // Kernels are WebAssembly.
+        'script-src': ['self', 'wasm-unsafe-eval'],
+        'worker-src': ['self', 'blob:'],
+        'connect-src': ['self', 'blob:'],
+        // Figures set sizes and colours in style attributes.
+        'style-src': ['self', 'unsafe-inline'],
+        'img-src': ['self', 'data:', 'blob:'],
+        'font-src': ['self', 'data:'],
+        'object-src': ['none'],
+        'base-uri': ['self'],
+        'form-action': ['self'],
+        'frame-ancestors': ['none'],
+      },
+    },
     alias: {
       $engine: 'workers/engine',
       $workers: 'workers',

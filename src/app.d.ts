@@ -39,6 +39,8 @@ declare global {
 
     interface PageData {
       meta?: { title: string };
+      /** The path below the team, shown in the header; the last one is this page. */
+      crumbs?: { label: string; href?: string }[];
     }
   }
 }

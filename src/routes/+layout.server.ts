@@ -1,0 +1,3 @@
+export function load({ locals }) {
+  return { theme: locals.theme };
+}

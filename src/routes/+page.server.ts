@@ -1,0 +1,5 @@
+import { redirect } from '@sveltejs/kit';
+
+export function load({ locals }) {
+  redirect(303, locals.person ? '/studies' : '/sign-in');
+}
