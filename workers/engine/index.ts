@@ -2,3 +2,15 @@
 export * from './types';
 export { engineVersion } from './version';
 export { planLimits, planSchema, type Plan, type Rule } from './plan';
+export { PlanError } from './errors';
+export { axesOf, planEpochs } from './prepare';
+export {
+  consequencesOf,
+  type Caution,
+  type CautionCode,
+  type Consequences,
+  type EpochCounts,
+} from './consequences';
+export type { KernelWidth, PhaseMethod } from './phase/method';
+export { morletKernel } from './phase/morlet';
+export { phaseMethods } from './phase/registry';

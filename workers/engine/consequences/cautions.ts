@@ -1,0 +1,34 @@
+import type { Caution, CautionInput, CautionRule } from './caution';
+import * as epochs from './epoch-cautions';
+import * as signal from './signal-cautions';
+import * as test from './test-cautions';
+
+export type { Caution, CautionCode } from './caution';
+
+/** In the order the form shows them: what stops, what can mislead, how to read the outcome. */
+const rules: CautionRule[] = [
+  epochs.tooFewEpochs,
+  signal.tooMuchMemory,
+  test.fewPermutations,
+  test.fewArrangements,
+  epochs.fewEpochs,
+  epochs.epochsLost,
+  epochs.unequalEpochs,
+  epochs.differentRecordings,
+  epochs.conditionsInBlocks,
+  epochs.epochsOverlap,
+  signal.badSites,
+  signal.referenceAnalysed,
+  signal.referenceOfFew,
+  test.shortWindowForShifts,
+  signal.wideKernels,
+  signal.lineFrequency,
+  signal.sharedSources,
+  test.clusterClaim,
+  test.falseDiscoveryDependence,
+];
+
+/** The cautions that apply to a plan, most pressing first. */
+export function cautionsOf(input: CautionInput): Caution[] {
+  return rules.map((rule) => rule(input)).filter((caution) => caution !== null);
+}

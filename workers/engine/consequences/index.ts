@@ -1,0 +1,108 @@
+import type { Plan } from '../plan';
+import type { Epoch, LostEpoch, RecordingFacts } from '../types';
+import { chanceIspc, criticalIspc, differenceSd } from '../numbers/chance';
+import { phaseLayout } from '../phase/layout';
+import type { KernelWidth } from '../phase/method';
+import { phaseMethod } from '../phase/registry';
+import { keepsWholeWindow } from '../phase/window';
+import { axesOf } from '../prepare/axes';
+import { windowSamples } from '../prepare/grid';
+import { planEpochs } from '../prepare/plan-epochs';
+import { cautionsOf, type Caution } from './cautions';
+import { logArrangements, smallestAdjustedP, smallestP, type EpochCounts } from './reach';
+
+export type { Caution, CautionCode } from './cautions';
+export type { EpochCounts } from './reach';
+export type { KernelWidth } from '../phase/method';
+
+/** The z at which the smallest difference is stated: about what a map of many tests asks for. */
+export const statedZ = 3.5;
+
+/** What a plan can show and what speaks against it, before any statistic is computed. */
+export interface Consequences {
+  pairs: number;
+  frequencies: number;
+  times: number;
+  /** Tests in all: pairs x frequencies x times. */
+  tests: number;
+  /** Epochs that go into the test: as screened, or as the metadata allow. */
+  epochs: EpochCounts;
+  lost: LostEpoch[];
+  /** Smallest p under the correction that carries the claim. */
+  smallestP: number;
+  /** Smallest p of a single test, uncorrected. */
+  smallestUncorrectedP: number;
+  /** Different arrangements the null can draw; null when beyond counting (above 10^15). */
+  arrangements: number | null;
+  /** ISPC expected by chance alone at these counts; null without epochs. */
+  chance: { a: number | null; b: number | null };
+  /** ISPC that chance passes at alpha in one test. */
+  critical: { a: number | null; b: number | null };
+  /** Difference of ISPC that stands at z = `statedZ` where there is no synchrony in either. */
+  smallestDifference: { z: number; difference: number | null };
+  kernels: KernelWidth[];
+  guardS: number;
+  /** Memory for the phases of all epochs, shared by the workers, bytes. */
+  phaseBytes: number;
+  cautions: Caution[];
+}
+
+/**
+ * The consequences of a plan. Pure, reads no samples, fast enough to run at each keystroke.
+ * `screened` are the epochs left after limits in uV, when they are known.
+ * @throws PlanError when the plan does not fit the recordings.
+ */
+export function consequencesOf(
+  plan: Plan,
+  recordings: RecordingFacts[],
+  screened?: { epochs: Epoch[]; lost: LostEpoch[] },
+): Consequences {
+  const axes = axesOf(plan, recordings);
+  const window = windowSamples(plan, axes.samplingRateHz);
+  const { epochs, lost } = screened ?? planEpochs(plan, recordings);
+  const counts = countsOf(epochs);
+  const kernels = phaseMethod(plan.phase.method).widths(
+    plan.phase,
+    axes.frequenciesHz,
+    axes.samplingRateHz,
+  );
+  const arrangements = logArrangements(plan.null, counts, window.count);
+  const mirrored = plan.null === 'labels' && counts.a === counts.b;
+  const tests = axes.pairs.length * axes.frequenciesHz.length * axes.timesS.length;
+  const facts = {
+    pairs: axes.pairs.length,
+    frequencies: axes.frequenciesHz.length,
+    times: axes.timesS.length,
+    tests,
+    epochs: counts,
+    lost,
+    smallestP: smallestAdjustedP(plan.test, plan.test.corrections[0], arrangements, mirrored),
+    smallestUncorrectedP: smallestP(plan.test, arrangements),
+    arrangements: arrangements > Math.log(1e15) ? null : Math.round(Math.exp(arrangements)),
+    chance: { a: orNull(counts.a, chanceIspc), b: orNull(counts.b, chanceIspc) },
+    critical: {
+      a: orNull(counts.a, (n) => criticalIspc(n, plan.test.alpha)),
+      b: orNull(counts.b, (n) => criticalIspc(n, plan.test.alpha)),
+    },
+    smallestDifference: {
+      z: statedZ,
+      difference:
+        counts.a > 0 && counts.b > 0
+          ? Math.min(1, statedZ * differenceSd(counts.a, counts.b))
+          : null,
+    },
+    kernels,
+    guardS: Math.max(...kernels.map((kernel) => kernel.halfLength)) / axes.samplingRateHz,
+    phaseBytes: phaseLayout(axes, epochs.length, window, keepsWholeWindow(plan)).byteLength,
+  };
+  return { ...facts, cautions: cautionsOf({ plan, recordings, axes, epochs, window, facts }) };
+}
+
+function countsOf(epochs: Epoch[]): EpochCounts {
+  const a = epochs.filter((epoch) => epoch.condition === 'a').length;
+  return { a, b: epochs.length - a };
+}
+
+function orNull(epochs: number, value: (epochs: number) => number): number | null {
+  return epochs > 0 ? value(epochs) : null;
+}

@@ -1,0 +1,54 @@
+import type { Plan } from '../plan';
+import { logChoose, logFactorial } from '../numbers/counting';
+
+export interface EpochCounts {
+  a: number;
+  b: number;
+}
+
+/** ln of the number of different outcomes that the null can draw. */
+export function logArrangements(
+  nullId: Plan['null'],
+  { a, b }: EpochCounts,
+  windowCount: number,
+): number {
+  switch (nullId) {
+    case 'labels':
+      return logChoose(a + b, a);
+    case 'trial-order':
+      return logFactorial(a) + logFactorial(b);
+    case 'time-shift':
+      return (a + b) * Math.log(windowCount);
+  }
+}
+
+/**
+ * The smallest uncorrected p the test can give: 1/(P+1), twice that when two-sided
+ * (Phipson and Smyth 2010), and no smaller than the share of one among all arrangements.
+ */
+export function smallestP(test: Plan['test'], logArrangementCount: number): number {
+  const one = Math.max(1 / (test.permutations + 1), Math.exp(-logArrangementCount));
+  return Math.min(1, test.tail === 'two-sided' ? 2 * one : one);
+}
+
+/**
+ * The smallest corrected p: maxima over the map are compared in the plan's tail already, so they
+ * count once; Benjamini-Hochberg starts from the uncorrected p, when all tests reach it together.
+ * Relabelling two conditions of equal size the other way round turns every sign, so that a
+ * two-sided maximum is always met twice among all arrangements.
+ */
+export function smallestAdjustedP(
+  test: Plan['test'],
+  correction: Plan['test']['corrections'][number],
+  logArrangementCount: number,
+  mirrored: boolean,
+): number {
+  if (correction === 'benjamini-hochberg') return smallestP(test, logArrangementCount);
+  const share = Math.exp(-logArrangementCount) * (mirrored && test.tail === 'two-sided' ? 2 : 1);
+  return Math.min(1, Math.max(1 / (test.permutations + 1), share));
+}
+
+/** How many tests must reach the smallest p together before Benjamini-Hochberg can claim one. */
+export function togetherForFalseDiscovery(test: Plan['test'], tests: number, p: number): number {
+  return Math.max(1, Math.ceil((p * tests) / test.alpha - 1e-9));
+}

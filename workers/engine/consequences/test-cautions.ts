@@ -1,0 +1,67 @@
+import { said, widestKernel, type CautionRule } from './caution';
+import { togetherForFalseDiscovery } from './reach';
+
+/** Windows shorter than this many kernel widths hold few different shifts. Common practice, no source. */
+const widthsForShifts = 10;
+
+export const fewPermutations: CautionRule = ({ plan, facts }) => {
+  const { alpha, permutations, corrections } = plan.test;
+  if (facts.smallestP > alpha) {
+    return {
+      code: 'few-permutations',
+      severity: 'attention',
+      message: `The smallest p this test can give is ${said(facts.smallestP)}, above alpha ${said(alpha)}: nothing can be claimed. Ask for more permutations${facts.arrangements !== null && facts.arrangements < permutations ? ' and more epochs' : ''}.`,
+    };
+  }
+  if (!corrections.includes('benjamini-hochberg')) return null;
+  const together = togetherForFalseDiscovery(plan.test, facts.tests, facts.smallestUncorrectedP);
+  if (together === 1) return null;
+  return {
+    code: 'few-permutations',
+    severity: 'attention',
+    message: `With ${said(permutations)} permutations, Benjamini–Hochberg can claim something only when ${said(together)} of the ${said(facts.tests)} tests reach the smallest p, ${said(facts.smallestUncorrectedP)}, together.`,
+  };
+};
+
+export const fewArrangements: CautionRule = ({ plan, facts }) => {
+  const { arrangements, epochs } = facts;
+  if (epochs.a < 2 || epochs.b < 2) return null;
+  if (arrangements === null || arrangements >= plan.test.permutations) return null;
+  return {
+    code: 'few-arrangements',
+    severity: 'attention',
+    message: `These epochs can be shuffled in ${said(arrangements)} different ways only: ${said(plan.test.permutations)} permutations repeat them, and p cannot fall below one in ${said(arrangements)}.`,
+  };
+};
+
+export const shortWindowForShifts: CautionRule = ({ plan, facts }) => {
+  if (plan.null !== 'time-shift') return null;
+  const widest = widestKernel(facts.kernels);
+  const window = plan.epoch.toS - plan.epoch.fromS;
+  if (window >= widthsForShifts * widest.timeFwhmS) return null;
+  return {
+    code: 'short-window-for-shifts',
+    severity: 'attention',
+    message: `A window of ${said(window)} s holds only ${said(window / widest.timeFwhmS)} kernel widths at ${said(widest.frequencyHz, 3)} Hz: shifts inside it differ little, so this null is coarse. Lengthen the window or choose trial-shuffled.`,
+  };
+};
+
+export const clusterClaim: CautionRule = ({ plan }) =>
+  plan.test.corrections.includes('cluster-mass')
+    ? {
+        code: 'cluster-claim',
+        severity: 'note',
+        message:
+          'A significant cluster is a claim about the cluster as a whole, not about each of its points, its onset or its extent.',
+      }
+    : null;
+
+export const falseDiscoveryDependence: CautionRule = ({ plan }) =>
+  plan.test.corrections.includes('benjamini-hochberg')
+    ? {
+        code: 'false-discovery-dependence',
+        severity: 'note',
+        message:
+          'Benjamini–Hochberg bounds the expected share of false claims, not the chance of any, and assumes independent or positively dependent tests.',
+      }
+    : null;

@@ -1,0 +1,3 @@
+export { axesOf } from './axes';
+export { windowSamples } from './grid';
+export { planEpochs } from './plan-epochs';
