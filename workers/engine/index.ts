@@ -14,3 +14,4 @@ export {
 export type { KernelWidth, PhaseMethod } from './phase/method';
 export { morletKernel } from './phase/morlet';
 export { phaseMethods } from './phase/registry';
+export * from './read';
