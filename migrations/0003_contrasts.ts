@@ -28,7 +28,10 @@ export async function up(db: Kysely<unknown>): Promise<void> {
       locked_by uuid references person (id),
       created_by uuid not null references person (id),
       created_at timestamptz not null default now(),
+      -- Counts the saves of a draft: a save that was based on an older one is refused.
+      revision integer not null default 0,
       updated_at timestamptz not null default now(),
+      updated_by uuid references person (id),
       constraint plan_contrast_version_key unique (contrast_id, version),
       constraint plan_team_id_key unique (team_id, id),
       constraint plan_locked_whole check (

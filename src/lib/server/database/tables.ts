@@ -160,7 +160,9 @@ interface PlanTable {
   lockedBy: string | null;
   createdBy: string;
   createdAt: CreatedAt;
+  revision: Generated<number>;
   updatedAt: ColumnType<Date, never, Date>;
+  updatedBy: string | null;
 }
 
 export type RunState = 'running' | 'paused' | 'stopped' | 'failed' | 'finished';

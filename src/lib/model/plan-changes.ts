@@ -1,0 +1,102 @@
+import type { Plan, Rule } from '$engine';
+import { fieldName } from './plan-fields';
+
+/** One choice that differs between two versions of a plan, before and after in words. */
+export interface PlanChange {
+  field: string;
+  name: string;
+  before: string;
+  after: string;
+}
+
+const number = (value: number): string => String(value).replace('-', '−');
+const seconds = (value: number): string => `${number(value)} s`;
+const limit = (value: number | null): string =>
+  value === null ? 'not used' : `${number(value)} µV`;
+
+function list(values: readonly string[], most = 8): string {
+  if (values.length <= most) return values.join(', ');
+  return `${values.slice(0, most).join(', ')} and ${values.length - most} more`;
+}
+
+function ruleWords(rule: Rule, fileName: (sha256: string) => string): string {
+  const where = fileName(rule.recording);
+  if (rule.kind === 'events') return `events ${list(rule.labels)} of ${where}`;
+  const span = `${seconds(rule.fromS)} to ${seconds(rule.toS)}`;
+  return `every ${seconds(rule.everyS)} from ${span} of ${where}`;
+}
+
+function pairWords(pairs: Plan['pairs']): string {
+  switch (pairs.kind) {
+    case 'all':
+      return 'all';
+    case 'within':
+      return `within ${list(pairs.sites)}`;
+    case 'between':
+      return `between ${list(pairs.first)} and ${list(pairs.second)}`;
+    case 'from':
+      return `from ${pairs.site}`;
+  }
+}
+
+function frequencyWords(rule: Plan['phase']['frequencies']): string {
+  if (rule.kind === 'list') return `${list(rule.hz.map(number), 20)} Hz`;
+  const { fromHz, toHz, steps, spacing } = rule;
+  return `${number(fromHz)} to ${number(toHz)} Hz, ${steps} ${spacing} steps`;
+}
+
+function referenceWords(reference: Plan['epoch']['reference']): string {
+  if (reference.kind === 'recorded') return 'as recorded';
+  if (reference.kind === 'average') return 'mean of all analysed sites';
+  return `mean of ${list(reference.sites)}`;
+}
+
+/** Everything a plan fixes, as [path, words, exact value]; the exact value decides on a change. */
+function choices(plan: Plan): [string, string, unknown][] {
+  const byHash = new Map(plan.recordings.map((each) => [each.sha256, each.name]));
+  const fileName = (sha256: string) => byHash.get(sha256) ?? 'an unlisted recording';
+  const rules = (which: Rule[]) => which.map((rule) => ruleWords(rule, fileName)).join('; ');
+  const { epoch, phase, times, test } = plan;
+  return [
+    ['question', plan.question, plan.question],
+    ['participant', plan.participant, plan.participant],
+    ['recordings', list(plan.recordings.map((each) => each.name)), plan.recordings],
+    ['a.name', plan.a.name, plan.a.name],
+    ['a.rules', rules(plan.a.rules), plan.a.rules],
+    ['b.name', plan.b.name, plan.b.name],
+    ['b.rules', rules(plan.b.rules), plan.b.rules],
+    ['epoch.fromS', seconds(epoch.fromS), epoch.fromS],
+    ['epoch.toS', seconds(epoch.toS), epoch.toS],
+    ['epoch.detrend', epoch.detrend, epoch.detrend],
+    ['epoch.reference', referenceWords(epoch.reference), epoch.reference],
+    ['epoch.reject.aboveUv', limit(epoch.reject.aboveUv), epoch.reject.aboveUv],
+    ['epoch.reject.flatBelowUv', limit(epoch.reject.flatBelowUv), epoch.reject.flatBelowUv],
+    ['epoch.reject.byHand', `${epoch.reject.byHand.length} marked`, epoch.reject.byHand],
+    ['sites', `${plan.sites.length}: ${list(plan.sites)}`, plan.sites],
+    ['pairs', pairWords(plan.pairs), plan.pairs],
+    ['phase.method', phase.method, phase.method],
+    ['phase.frequencies', frequencyWords(phase.frequencies), phase.frequencies],
+    ['phase.cycles', `${number(phase.cycles.from)} to ${number(phase.cycles.to)}`, phase.cycles],
+    ['times.fromS', seconds(times.fromS), times.fromS],
+    ['times.toS', seconds(times.toS), times.toS],
+    ['times.stepS', seconds(times.stepS), times.stepS],
+    ['measure', plan.measure, plan.measure],
+    ['null', plan.null, plan.null],
+    ['test.tail', test.tail, test.tail],
+    ['test.alpha', number(test.alpha), test.alpha],
+    ['test.permutations', test.permutations.toLocaleString('en'), test.permutations],
+    ['test.corrections', list(test.corrections), test.corrections],
+    ['test.clusterFormingZ', number(test.clusterFormingZ), test.clusterFormingZ],
+    ['test.seed', test.seed, test.seed],
+  ];
+}
+
+/** Which choices of `now` differ from those of `before`, in the order of the form. */
+export function planChanges(before: Plan, now: Plan): PlanChange[] {
+  const old = choices(before);
+  return choices(now).flatMap(([field, after, value], i) => {
+    const [, beforeWords, beforeValue] = old[i];
+    if (JSON.stringify(value) === JSON.stringify(beforeValue)) return [];
+    return [{ field, name: fieldName(field), before: beforeWords, after }];
+  });
+}
