@@ -1,11 +1,12 @@
-import type { ChannelFacts, RecordingFacts } from '$engine';
+import type { RecordingFacts } from '$engine';
 
-/** A recording as the Define and Run pages know it: the engine's facts, and whose it is. */
+/** A recording as the Define page knows it: the engine's facts, whose it is, and which sites are EEG. */
 export interface StudyRecording extends RecordingFacts {
   id: string;
   /** The participant's code. */
   participant: string;
   simulated: boolean;
   sizeBytes: number;
-  channels: (ChannelFacts & { type: string })[];
+  durationS: number;
+  eegSites: string[];
 }

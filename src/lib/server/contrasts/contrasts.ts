@@ -3,7 +3,7 @@ import { suggestSeed } from '$lib/model/seed';
 import type { Member } from '../access';
 import { record } from '../audit';
 import type { Db } from '../database';
-import { notFound } from './not-found';
+import { notFound } from '../access/not-found';
 
 export type Named = { ok: true; id: string } | { ok: false; field: 'name'; message: string };
 

@@ -3,7 +3,7 @@ import type { Member } from '../access';
 import { record } from '../audit';
 import type { Db } from '../database';
 import { getPlanBody } from './get';
-import { notFound } from './not-found';
+import { notFound } from '../access/not-found';
 import { readLockedBody } from './plan-body';
 
 export type Saved =

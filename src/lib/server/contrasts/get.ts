@@ -2,7 +2,7 @@ import type { Plan } from '$engine';
 import type { PlanDraft } from '$lib/model/plan-draft';
 import type { Member } from '../access';
 import type { Db } from '../database';
-import { notFound } from './not-found';
+import { notFound } from '../access/not-found';
 import { readDraftBody, readLockedBody } from './plan-body';
 
 export interface PlanVersion {

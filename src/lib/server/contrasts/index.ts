@@ -7,4 +7,9 @@ export {
   type PlanBody,
   type PlanVersion,
 } from './get';
-export { getRecordingFacts, listRecordings, type RecordingSummary } from './recording-facts';
+export {
+  participantRecordings,
+  participantsWithRecordings,
+  type ParticipantChoice,
+} from './study-recordings';
+export { stageFacts, type RunFacts, type StageFacts } from './stage-facts';
