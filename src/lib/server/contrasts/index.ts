@@ -13,3 +13,4 @@ export {
   type ParticipantChoice,
 } from './study-recordings';
 export { stageFacts, type RunFacts, type StageFacts } from './stage-facts';
+export { changesAfterFirstLook, type AfterFirstLook } from './after-first-look';
