@@ -1,5 +1,5 @@
 import { z } from 'zod';
-import { participantCodePattern, participantCodeRule } from './bids/sidecars';
+import { participantCodePattern, participantCodeRule } from './participant';
 
 /** The form for a study, new or changed. */
 export const studySchema = z.object({
