@@ -1,0 +1,48 @@
+import type { Plan } from '../plan';
+import type { Axes, Epoch, LostEpoch } from '../types';
+import { epochReader, type RecordingSource } from './read-epoch';
+import { peakToPeak } from './signal';
+
+/**
+ * Reads the samples of `epochs` and returns those that break a limit of the plan inside the window
+ * without its guard, with the site that breaks it most. Reads nothing when there is no limit.
+ */
+export async function screenEpochs(
+  plan: Plan,
+  axes: Axes,
+  recordings: RecordingSource[],
+  epochs: Epoch[],
+): Promise<LostEpoch[]> {
+  const { aboveUv, flatBelowUv } = plan.epoch.reject;
+  if (aboveUv === null && flatBelowUv === null) return [];
+  const reader = epochReader(plan, axes, recordings);
+  const lost: LostEpoch[] = [];
+  for (const epoch of epochs) {
+    const samples = await reader.read(epoch);
+    const spans = samples.map((signal) => peakToPeak(signal, reader.guard, reader.windowCount));
+    const broken = brokenLimit(spans, aboveUv, flatBelowUv);
+    if (!broken) continue;
+    const { condition, recording, onsetS, label } = epoch;
+    const { reason, site } = broken;
+    lost.push({
+      ...{ condition, recording, onsetS, label, reason },
+      site: plan.sites[site],
+      valueUv: spans[site],
+    });
+  }
+  return lost;
+}
+
+function brokenLimit(
+  spans: number[],
+  aboveUv: number | null,
+  flatBelowUv: number | null,
+): { reason: 'above-limit' | 'flat'; site: number } | null {
+  const largest = spans.indexOf(Math.max(...spans));
+  if (aboveUv !== null && spans[largest] > aboveUv) return { reason: 'above-limit', site: largest };
+  const smallest = spans.indexOf(Math.min(...spans));
+  if (flatBelowUv !== null && spans[smallest] < flatBelowUv) {
+    return { reason: 'flat', site: smallest };
+  }
+  return null;
+}
