@@ -1,3 +1,5 @@
 export { axesOf } from './axes';
 export { windowSamples } from './grid';
 export { planEpochs } from './plan-epochs';
+export { epochReader, type EpochReader, type RecordingSource } from './read-epoch';
+export { screenEpochs } from './screen';

@@ -1,7 +1,7 @@
 import { PlanError } from '../errors';
 import type { Plan, Rule } from '../plan';
 import type { RecordingFacts } from '../types';
-import { factsOf } from './recordings';
+import { recordingOf } from './recordings';
 
 /** A moment that a rule asks for, before anybody looked whether its samples are there. */
 export interface Moment {
@@ -20,7 +20,7 @@ export function momentsOf(
   recordings: RecordingFacts[],
 ): Moment[] {
   return plan[condition].rules.flatMap((rule, i) =>
-    ruleMoments(rule, factsOf(plan, recordings, rule.recording), `${condition}.rules.${i}`),
+    ruleMoments(rule, recordingOf(plan, recordings, rule.recording), `${condition}.rules.${i}`),
   );
 }
 

@@ -5,7 +5,7 @@ import type { EdfSignal } from '../read/edf-signals';
 import type { ByteSource } from '../read/byte-source';
 import type { Axes, Epoch, RecordingFacts } from '../types';
 import { windowSamples } from './grid';
-import { channelIndices, factsOf, sitesRead } from './recordings';
+import { channelIndices, recordingOf, sitesRead } from './recordings';
 import { detrend, rereference } from './signal';
 
 /** A recording's facts with its bytes. */
@@ -62,7 +62,7 @@ export function epochReader(plan: Plan, axes: Axes, recordings: RecordingSource[
       return prepared(plan, samples);
     },
     describe: (epoch) =>
-      `the epoch at ${Number(epoch.onsetS.toFixed(3))} s of ${factsOf(plan, facts, epoch.recording).name}`,
+      `the epoch at ${Number(epoch.onsetS.toFixed(3))} s of ${recordingOf(plan, facts, epoch.recording).name}`,
   };
 }
 
@@ -71,7 +71,7 @@ async function openRecording(
   recordings: RecordingSource[],
   sha256: string,
 ): Promise<OpenRecording> {
-  const facts = factsOf(
+  const facts = recordingOf(
     plan,
     recordings.map((recording) => recording.facts),
     sha256,

@@ -3,7 +3,11 @@ import type { Plan } from '../plan';
 import type { ChannelFacts, RecordingFacts } from '../types';
 
 /** The recording's facts, or an error that names the file and what is wrong. */
-export function factsOf(plan: Plan, recordings: RecordingFacts[], sha256: string): RecordingFacts {
+export function recordingOf(
+  plan: Plan,
+  recordings: RecordingFacts[],
+  sha256: string,
+): RecordingFacts {
   const name = plan.recordings.find((recording) => recording.sha256 === sha256)?.name;
   const found = recordings.find((recording) => recording.sha256 === sha256);
   if (found && name !== undefined) return found;
@@ -17,7 +21,7 @@ export function factsOf(plan: Plan, recordings: RecordingFacts[], sha256: string
 
 /** The facts of the plan's recordings, in the plan's order. */
 export function planRecordings(plan: Plan, recordings: RecordingFacts[]): RecordingFacts[] {
-  return plan.recordings.map(({ sha256 }) => factsOf(plan, recordings, sha256));
+  return plan.recordings.map(({ sha256 }) => recordingOf(plan, recordings, sha256));
 }
 
 /**
