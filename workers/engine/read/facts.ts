@@ -23,7 +23,7 @@ export interface DescribedChannel extends ChannelFacts {
 }
 
 export interface DescribedRecording {
-  facts: RecordingFacts & { channels: DescribedChannel[] };
+  facts: Omit<RecordingFacts, 'channels'> & { channels: DescribedChannel[] };
   eventSource: 'annotation' | 'events.tsv';
   /** All that is odd about the file and its sidecars. */
   notices: Notice[];
