@@ -41,6 +41,12 @@ export async function revokeSessions(personId: string, exceptId?: string): Promi
   await Promise.all(others.map((session) => lucia.invalidateSession(session.id)));
 }
 
+/** How many other browsers the person is signed in with. */
+export async function countOtherSessions(personId: string, sessionId: string): Promise<number> {
+  const sessions = await lucia.getUserSessions(personId);
+  return sessions.filter((session) => session.id !== sessionId).length;
+}
+
 /** Rows of sessions nobody will use again; called when the server starts. */
 export async function forgetExpiredSessions(): Promise<void> {
   await lucia.deleteExpiredSessions();

@@ -1,0 +1,3 @@
+export { acceptAsNew, acceptAsPerson } from './accept';
+export { findInvitation, listInvitations } from './find';
+export { invitationDays, invite, resendInvitation, revokeInvitation } from './send';
