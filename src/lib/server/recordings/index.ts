@@ -1,5 +1,10 @@
-export { ingestRecording, type Ingested, type NewRecording } from './ingest';
-export { IngestError } from './ingest-error';
+export { attachSidecars, restoreAnnotations, type Attached } from './attach';
+export { markChannel } from './bad-channels';
+export { recordingDetail, type RecordingDetail } from './detail';
+export { downloadRecording } from './download';
 export { recordingFacts, type RecordingSelection } from './facts';
+export { IngestError } from './ingest-error';
+export { ingestRecording, type Ingested, type NewRecording } from './ingest';
 export { listRecordings, type ListedRecording } from './list';
+export { removeRecording, type RemovedRecording } from './remove';
 export { type SidecarFile, type SidecarFiles } from './sidecars';

@@ -1,6 +1,6 @@
 import { allow } from '$lib/server/access';
 import { db } from '$lib/server/database';
-import { downloadRecording } from '$lib/server/recordings/download';
+import { downloadRecording } from '$lib/server/recordings';
 import { storage } from '$lib/server/storage';
 import type { RequestHandler } from './$types';
 
