@@ -1,1 +1,21 @@
-export const correctionIds = ['max-statistic', 'cluster-mass', 'benjamini-hochberg'] as const;
+import { benjaminiHochberg } from './benjamini-hochberg';
+import { clusterMass } from './cluster-mass';
+import { maxStatistic } from './max-statistic';
+
+/** In the order the form shows them. */
+export const corrections = [maxStatistic, clusterMass, benjaminiHochberg] as const;
+
+export type CorrectionId = (typeof corrections)[number]['id'];
+
+/** Ids in the order the form shows them. */
+export const correctionIds = corrections.map((correction) => correction.id) as [
+  CorrectionId,
+  ...CorrectionId[],
+];
+
+/** @throws RangeError for an id that is not registered. */
+export function correctionOf(id: CorrectionId): (typeof corrections)[number] {
+  const found = corrections.find((correction) => correction.id === id);
+  if (!found) throw new RangeError(`correction "${String(id)}" is not registered`);
+  return found;
+}

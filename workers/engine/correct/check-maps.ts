@@ -1,0 +1,45 @@
+import type { Axes } from '../types';
+import type { ClaimMaps } from './correction';
+
+/**
+ * Checks that maps have the plan's shape and that every number can be what it says: a server calls
+ * it (through `concludeFrom`) on what it was sent.
+ * @throws RangeError naming the map, the index and the value
+ */
+export function checkMaps(axes: Axes, permutations: number, maps: ClaimMaps): void {
+  const cells = axes.pairs.length * axes.frequenciesHz.length * axes.timesS.length;
+  const whole = (low: number, high: number) => (value: number) => value >= low && value <= high;
+  const finite = (value: number) => Number.isFinite(value);
+  check('observedA', maps.observedA, cells, finite);
+  check('observedB', maps.observedB, cells, finite);
+  check('lagA', maps.lagA, cells, whole(-3.15, 3.15));
+  check('lagB', maps.lagB, cells, whole(-3.15, 3.15));
+  check('nullSd', maps.nullSd, cells, (value) => finite(value) && value >= 0);
+  check('z', maps.z, cells, finite);
+  check('upper', maps.upper, cells, whole(0, permutations));
+  check('lower', maps.lower, cells, whole(0, permutations));
+  check('maxStatistic', maps.maxStatistic, permutations, finite);
+  check('maxClusterMass', maps.maxClusterMass, permutations, (v) => finite(v) && v >= 0);
+  for (let x = 0; x < cells; x++) {
+    // Each surrogate is above, below or equal: the two counts cover all of them.
+    if (maps.upper[x] + maps.lower[x] < permutations) {
+      throw new RangeError(
+        `upper and lower: ${maps.upper[x]} + ${maps.lower[x]} at ${x} leave out some of ${permutations} permutations`,
+      );
+    }
+  }
+}
+
+function check(
+  name: string,
+  map: Float32Array | Uint32Array,
+  length: number,
+  fits: (value: number) => boolean,
+): void {
+  if (map.length !== length) {
+    throw new RangeError(`${name}: ${map.length} values where the plan makes ${length}`);
+  }
+  for (let x = 0; x < length; x++) {
+    if (!fits(map[x])) throw new RangeError(`${name}: ${map[x]} at ${x} is out of range`);
+  }
+}

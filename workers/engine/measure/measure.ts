@@ -1,0 +1,60 @@
+/** Where the phasors of one site pair lie, epoch by epoch; element offsets of the real parts. */
+export interface EpochRows {
+  /** Epochs to sum: the first `epochCount` entries of both lists of starts. */
+  epochCount: number;
+  /** Distance from an epoch's real parts to its imaginary parts; see phase/layout.ts. */
+  samplesPerEpoch: number;
+}
+
+/** The same with a circular shift of each epoch's window, for nulls that keep every sample. */
+export interface ShiftedRows extends EpochRows {
+  frequencyCount: number;
+  samplesPerFrequency: number;
+  /** The plan's times as indices among the window's samples. */
+  keptSamples: Int32Array;
+  /** Shift of each epoch, samples in 0 .. samplesPerFrequency - 1. */
+  jShifts: Uint16Array;
+  kShifts: Uint16Array;
+  /** Scratch of one entry a kept time. */
+  jSamples: Int32Array;
+  kSamples: Int32Array;
+}
+
+/**
+ * A measure of synchrony of two sites. Every epoch gives `termCount` additive terms at a feature
+ * (frequency and time); the measure is a function of a group's sums and its size. So a null needs
+ * sums only, whatever the measure. Adding one is a file and a line in measure/registry.ts.
+ */
+export interface Measure<Id extends string = string> {
+  id: Id;
+  name: string;
+  /** One sentence for hover and focus. */
+  sentence: string;
+  formula: string;
+  source: string;
+  /** Smallest and largest possible value. */
+  range: [number, number];
+  /** 1 to 8. */
+  termCount: number;
+  /**
+   * Overwrites `sums[feature * termCount + term]` with the sums over epochs. `jStarts[n]` and
+   * `kStarts[n]` need not be of the same epoch: that is how trials are shuffled.
+   */
+  sumTerms(
+    phasors: Float32Array,
+    jStarts: Int32Array,
+    kStarts: Int32Array,
+    sums: Float64Array,
+    rows: EpochRows,
+  ): void;
+  /** The same at the kept samples of windows rotated by each epoch's shift. */
+  sumShiftedTerms(
+    phasors: Float32Array,
+    jStarts: Int32Array,
+    kStarts: Int32Array,
+    sums: Float64Array,
+    rows: ShiftedRows,
+  ): void;
+  /** `values[i]` of a group of `epochCount` epochs from `sums[i * termCount + term]`. */
+  values(sums: Float64Array, epochCount: number, values: Float64Array, count: number): void;
+}

@@ -1,0 +1,76 @@
+import type { Measure } from '../measure/measure';
+import type { PhaseLayout } from '../phase/layout';
+
+/** Sizes that a null's draws depend on. */
+export interface DrawShape {
+  permutations: number;
+  siteCount: number;
+  epochsA: number;
+  epochsB: number;
+  /** Samples of an epoch's window, both ends included. */
+  windowSamples: number;
+}
+
+/** Permutations `from .. to - 1`. */
+export interface PermutationRange {
+  from: number;
+  to: number;
+}
+
+/** What a run's surrogates are made of; the same for every pair. */
+export interface RunInput {
+  measure: Measure;
+  phasors: Float32Array;
+  layout: PhaseLayout;
+  shape: DrawShape;
+  draws: ArrayBufferLike;
+  /** frequency x time points of a pair. */
+  featureCount: number;
+}
+
+/**
+ * Makes the surrogates of pairs, one pair after the other. It owns its scratch: not re-entrant.
+ */
+export interface PairSampler {
+  /**
+   * Writes surrogates of sites j and k, `[permutation - range.from][feature]`, f64 sums rounded
+   * once when stored. A null whose `statistic` is 'difference' writes measure(A) - measure(B) to
+   * `first`; one whose `statistic` is 'z-difference' writes measure(A) to `first` and measure(B)
+   * to `second`.
+   */
+  surrogates(
+    j: number,
+    k: number,
+    range: PermutationRange,
+    first: Float32Array,
+    second: Float32Array,
+  ): void;
+}
+
+/**
+ * A null model: what is shuffled, how it is drawn, and what it makes of a pair. Permutation p is
+ * drawn from its own generator, so any range may be drawn by anyone, in any order.
+ * Adding one is a file and a line in null/registry.ts.
+ */
+export interface NullModel<Id extends string = string> {
+  id: Id;
+  name: string;
+  /** One sentence: what is shuffled. */
+  shuffles: string;
+  /** One sentence: what holds if the null is true. */
+  underNull: string;
+  source: string;
+  /** Whether phases are needed at every sample of the window, not at the plan's times only. */
+  needsWholeWindow: boolean;
+  /**
+   * The statistic of a feature: the difference of the measure, or the difference of each
+   * condition's z against its own surrogates (numerics, section 5).
+   */
+  statistic: 'difference' | 'z-difference';
+  /** The statistic in words, for axes and tables. */
+  statisticName: string;
+  drawsByteLength(shape: DrawShape): number;
+  /** Writes the draws of a range of permutations; touches no other bytes. */
+  draw(seed: string, range: PermutationRange, draws: ArrayBufferLike, shape: DrawShape): void;
+  sampler(run: RunInput): PairSampler;
+}

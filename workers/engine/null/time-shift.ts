@@ -1,0 +1,75 @@
+import type { DrawShape, NullModel, PairSampler, PermutationRange, RunInput } from './model';
+import { permutationGenerator } from './random';
+import { conditionSampler } from './condition-sampler';
+
+/** Shifts are kept as 16-bit numbers. */
+const mostSamples = 65_536;
+
+/**
+ * Draws: Uint16, `draws[(permutation * siteCount + site) * epochCount + epoch]`, a circular shift of
+ * the whole window, uniform in 0 .. windowSamples - 1.
+ */
+function draw(
+  seed: string,
+  range: PermutationRange,
+  draws: ArrayBufferLike,
+  shape: DrawShape,
+): void {
+  const { siteCount, windowSamples } = shape;
+  const epochCount = shape.epochsA + shape.epochsB;
+  if (windowSamples > mostSamples) {
+    throw new RangeError(
+      `time-shift draws: a window of ${windowSamples} samples, at most ${mostSamples}; shorten the window`,
+    );
+  }
+  const shifts = new Uint16Array(draws);
+  for (let p = range.from; p < range.to; p++) {
+    const random = permutationGenerator(seed, timeShift.id, p);
+    const row = p * siteCount * epochCount;
+    for (let i = 0; i < siteCount * epochCount; i++) shifts[row + i] = random.below(windowSamples);
+  }
+}
+
+function sampler(run: RunInput): PairSampler {
+  const { measure, layout } = run;
+  const shifts = new Uint16Array(run.draws);
+  const epochCount = layout.epochCount;
+  const stride = 2 * layout.samplesPerEpoch;
+  const jSamples = new Int32Array(layout.keptSamples.length);
+  const kSamples = new Int32Array(layout.keptSamples.length);
+  return conditionSampler(run, ({ j, k, permutation, from, epochs, sums, jStarts, kStarts }) => {
+    const jRow = (permutation * layout.siteCount + j) * epochCount + from;
+    const kRow = (permutation * layout.siteCount + k) * epochCount + from;
+    for (let n = 0; n < epochs; n++) {
+      jStarts[n] = (j * epochCount + from + n) * stride;
+      kStarts[n] = (k * epochCount + from + n) * stride;
+    }
+    measure.sumShiftedTerms(run.phasors, jStarts, kStarts, sums, {
+      epochCount: epochs,
+      samplesPerEpoch: layout.samplesPerEpoch,
+      frequencyCount: layout.frequencyCount,
+      samplesPerFrequency: layout.samplesPerFrequency,
+      keptSamples: layout.keptSamples,
+      jShifts: shifts.subarray(jRow, jRow + epochs),
+      kShifts: shifts.subarray(kRow, kRow + epochs),
+      jSamples,
+      kSamples,
+    });
+  });
+}
+
+export const timeShift: NullModel<'time-shift'> = {
+  id: 'time-shift',
+  name: 'Phase-shuffled by time shift',
+  shuffles:
+    'Every epoch of every site has its phase series rotated in time, over its whole window, by a shift of its own.',
+  underNull: 'The two sites keep no fixed phase relation in time.',
+  source: 'circular shifts within the epoch: common practice, no source',
+  needsWholeWindow: true,
+  statistic: 'z-difference',
+  statisticName: 'difference of z, A − B',
+  drawsByteLength: (shape) =>
+    shape.permutations * shape.siteCount * (shape.epochsA + shape.epochsB) * 2,
+  draw,
+  sampler,
+};
