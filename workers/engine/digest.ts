@@ -8,7 +8,7 @@ import type { Cluster } from './types';
 import { engineVersion } from './version';
 
 /** Kept epochs of each condition. */
-export interface EpochCounts {
+export interface RunCounts {
   epochsA: number;
   epochsB: number;
 }
@@ -31,7 +31,7 @@ export function planHash(plan: Plan): Promise<string> {
  */
 export function runDigest(
   plan: Plan,
-  counts: EpochCounts,
+  counts: RunCounts,
   maps: Pick<ClaimMaps, 'upper' | 'lower' | 'z' | 'maxStatistic'>,
   clusters: Pick<Cluster, 'exceedances'>[],
 ): Promise<string> {

@@ -160,5 +160,7 @@ export interface Outcome {
   clusters: Cluster[];
   /** p of each feature by the plan's tail. */
   p: Float32Array;
+  /** Features whose null has no spread: z = 0 and p = 1 by policy (nullSd is exactly 0 there). */
+  degenerateFeatures: number;
   digest: string;
 }

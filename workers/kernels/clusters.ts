@@ -48,7 +48,11 @@ export function joinClusters(
 }
 
 /** Resets the parents of these points, so that the forest can be used again. */
-export function releaseClusters(points: Int32Array, pointCount: number, forest: ClusterForest): void {
+export function releaseClusters(
+  points: Int32Array,
+  pointCount: number,
+  forest: ClusterForest,
+): void {
   for (let i = 0; i < pointCount; i++) forest.parent[points[i]] = -1;
 }
 

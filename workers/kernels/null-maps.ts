@@ -77,7 +77,8 @@ export function addNullMaps(
       if (histogram[slot] < 65_535) histogram[slot]++;
     }
     const permutation = rows.first + row;
-    const statistic = tailSign === 0 ? Math.max(highest, -lowest) : tailSign > 0 ? highest : -lowest;
+    const statistic =
+      tailSign === 0 ? Math.max(highest, -lowest) : tailSign > 0 ? highest : -lowest;
     if (statistic > maxStatistic[permutation]) maxStatistic[permutation] = statistic;
     const above = tailSign < 0 ? 0 : largest(z, positive, positiveCount, settings, scratch);
     const below = tailSign > 0 ? 0 : largest(z, negative, negativeCount, settings, scratch);

@@ -5,6 +5,14 @@ export interface NullSums {
   squares: Float64Array;
 }
 
+export function newNullSums(featureCount: number): NullSums {
+  return {
+    origin: new Float64Array(featureCount),
+    sum: new Float64Array(featureCount),
+    squares: new Float64Array(featureCount),
+  };
+}
+
 /**
  * Adds surrogates to the running sums of each feature.
  * Layout: `values[row * featureCount + feature]`, rows in order of permutation number; the very

@@ -1,6 +1,6 @@
 import type { Plan } from '../plan';
 import type { Axes, Outcome } from '../types';
-import { runDigest, type EpochCounts } from '../digest';
+import { runDigest, type RunCounts } from '../digest';
 import { checkMaps } from './check-maps';
 import type { ClaimMaps, Evidence } from './correction';
 import { observedClusters } from './observed-clusters';
@@ -46,7 +46,7 @@ export function concludeFrom(plan: Plan, axes: Axes, maps: ClaimMaps): Claims {
 export async function conclude(
   plan: Plan,
   axes: Axes,
-  counts: EpochCounts,
+  counts: RunCounts,
   maps: ClaimMaps,
 ): Promise<Outcome> {
   const claims = concludeFrom(plan, axes, maps);

@@ -34,7 +34,12 @@ export function labelSampler(run: RunInput): PairSampler {
     tabulateSubsets(terms, first, features * termCount, table, { epochCount, termStride });
     sumLabelled(table, masks, sums, range, { blocks, outStride });
     measure.values(sums, epochsA, valuesA, count * groupFeatures);
-    complement(sums, totals(terms, first, features * termCount, epochCount, termStride), outStride, count);
+    complement(
+      sums,
+      totals(terms, first, features * termCount, epochCount, termStride),
+      outStride,
+      count,
+    );
     measure.values(sums, epochsB, valuesB, count * groupFeatures);
     for (let p = 0; p < count; p++) {
       for (let i = 0; i < features; i++) {

@@ -39,7 +39,8 @@ export const labels: NullModel<'labels'> = {
   shuffles: 'The labels A and B are dealt anew over all epochs, keeping both counts.',
   underNull:
     'If A and B do not differ, an epoch might as well have carried the other label: the labels are exchangeable.',
-  source: 'Fisher 1935 (randomisation test); Maris and Oostenveld 2007 (contrasts over time and frequency)',
+  source:
+    'Fisher 1935 (randomisation test); Maris and Oostenveld 2007 (contrasts over time and frequency)',
   needsWholeWindow: false,
   statistic: 'difference',
   statisticName: 'difference A − B',
