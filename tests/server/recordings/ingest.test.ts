@@ -47,8 +47,9 @@ async function nothingIsLeft() {
     .where('studyId', '=', lab.studyId)
     .execute();
   expect(rows).toEqual([]);
-  const folders = await readdir(join(lab.folder, 'storage'), { recursive: true }).catch(() => []);
-  expect(folders.filter((name) => name !== '.incoming')).toEqual([]);
+  const options = { recursive: true, withFileTypes: true } as const;
+  const entries = await readdir(join(lab.folder, 'storage'), options).catch(() => []);
+  expect(entries.filter((entry) => entry.isFile())).toEqual([]);
 }
 
 /** "P. Example" and a technician in the identification fields. */
