@@ -102,7 +102,8 @@ export async function up(db: Kysely<unknown>): Promise<void> {
       surrogates double precision[] not null,
       mean double precision not null,
       sd double precision not null,
-      critical_value double precision not null,
+      -- The smallest value that passes; null where the permutations are too few for any.
+      critical_value double precision,
       constraint null_summary_run_kind_key unique (run_id, kind),
       foreign key (team_id, run_id) references run (team_id, id)
     );

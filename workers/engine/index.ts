@@ -14,9 +14,10 @@ export {
 export type { KernelWidth, PhaseMethod } from './phase/method';
 export { morletKernel } from './phase/morlet';
 export { phaseMethods } from './phase/registry';
+export { layoutOf } from './phase/phases';
 export * from './read';
 
-export { measures, measureIds, type MeasureId } from './measure/registry';
+export { measures, measureIds, measureOf, type MeasureId } from './measure/registry';
 export type { Measure } from './measure/measure';
 export { nullModels, nullModelOf, nullIds, type NullId } from './null/registry';
 export type { NullModel } from './null/model';

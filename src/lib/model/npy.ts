@@ -13,7 +13,7 @@ const arrays = {
 } as const;
 
 export type NpyDtype = keyof typeof arrays;
-export type NpyArray = InstanceType<(typeof arrays)[NpyDtype]>;
+export type NpyArray = Float32Array | Uint32Array | Uint16Array | Uint8Array;
 
 export interface NpyHeader {
   dtype: NpyDtype;

@@ -1,5 +1,6 @@
 import type { ColumnType, Generated, GeneratedAlways, JSONColumnType } from 'kysely';
 import type { Role } from '$lib/model/role';
+import type { RunState } from '$lib/model/run';
 
 /** A column the database fills in and nobody changes. */
 type CreatedAt = ColumnType<Date, never, never>;
@@ -165,7 +166,7 @@ interface PlanTable {
   updatedBy: string | null;
 }
 
-export type RunState = 'running' | 'paused' | 'stopped' | 'failed' | 'finished';
+export type { RunState };
 
 interface RunTable {
   id: Generated<string>;
@@ -193,7 +194,7 @@ interface NullSummaryTable {
   surrogates: number[];
   mean: number;
   sd: number;
-  criticalValue: number;
+  criticalValue: number | null;
 }
 
 interface ClusterTable {
