@@ -1,6 +1,7 @@
 /** What can go wrong on the browser's side of a run; the page words the remedy by the code. */
 export type RunErrorCode =
   | 'not-isolated'
+  | 'elsewhere'
   | 'network'
   | 'recording-missing'
   | 'recording-changed'
