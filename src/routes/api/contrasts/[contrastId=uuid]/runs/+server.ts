@@ -1,0 +1,19 @@
+import { json } from '@sveltejs/kit';
+import { newRunSchema } from '$lib/model/run';
+import { allow } from '$lib/server/access';
+import { db } from '$lib/server/database';
+import { readJson } from '$lib/server/read-json';
+import { createRun, listRuns } from '$lib/server/runs';
+import type { RequestHandler } from './$types';
+
+export const GET: RequestHandler = async (event) => {
+  const member = allow(event, 'contrast.read');
+  return json({ runs: await listRuns(db, member.teamId, event.params.contrastId) });
+};
+
+export const POST: RequestHandler = async (event) => {
+  const member = allow(event, 'run.write');
+  const asked = await readJson(event.request, newRunSchema);
+  const run = await createRun(db, member, event.params.contrastId, asked);
+  return json(run, { status: 201, headers: { Location: `/api/runs/${run.id}` } });
+};
