@@ -3,7 +3,7 @@ export * from './types';
 export { engineVersion } from './version';
 export { planLimits, planSchema, type Plan, type Rule } from './plan';
 export { PlanError } from './errors';
-export { axesOf, planEpochs } from './prepare';
+export { axesOf, epochReader, planEpochs, screenEpochs, type RecordingSource } from './prepare';
 export {
   consequencesOf,
   type Caution,
@@ -15,6 +15,10 @@ export type { KernelWidth, PhaseMethod } from './phase/method';
 export { morletKernel } from './phase/morlet';
 export { phaseMethods } from './phase/registry';
 export { layoutOf } from './phase/phases';
+export type { PhaseLayout } from './phase/layout';
+export { writePhases } from './phase/write-phases';
+export { phaseBytes } from './phase/phase-bytes';
+export { calibrate } from './calibrate';
 export * from './read';
 
 export { measures, measureIds, measureOf, type MeasureId } from './measure/registry';
