@@ -4,6 +4,17 @@ import type { z } from 'zod';
 export interface PlanIssue {
   field: string;
   message: string;
+  /** Nothing was given yet: to be said when asked, not held against someone who just began. */
+  missing?: true;
+}
+
+/** Empty text and empty lists are not yet given, everything else is wrong. */
+function isMissing(value: unknown): boolean {
+  return value === undefined || value === '' || (Array.isArray(value) && value.length === 0);
+}
+
+export function planIssue(field: string, message: string, value: unknown): PlanIssue {
+  return isMissing(value) ? { field, message, missing: true } : { field, message };
 }
 
 type ZodIssue = z.core.$ZodIssue;
@@ -70,8 +81,9 @@ function sentence(text: string): string {
 
 /** A schema's issues as sentences that name the value and the remedy. */
 export function issuesOf(error: { issues: ZodIssue[] }, input: unknown): PlanIssue[] {
-  return error.issues.map((issue) => ({
-    field: fieldOf(issue.path),
-    message: sentence(`${requirement(issue)}${shown(valueAt(input, issue.path))}`),
-  }));
+  return error.issues.map((issue) => {
+    const value = valueAt(input, issue.path);
+    const message = sentence(`${requirement(issue)}${shown(value)}`);
+    return planIssue(fieldOf(issue.path), message, value);
+  });
 }

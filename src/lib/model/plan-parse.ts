@@ -1,7 +1,7 @@
 import { planSchema, type Plan } from '$engine';
 import { readCount, readNumber } from './number-text';
 import type { ConditionDraft, PlanDraft, RuleDraft } from './plan-draft';
-import { issuesOf, type PlanIssue } from './plan-issues';
+import { issuesOf, planIssue, type PlanIssue } from './plan-issues';
 
 export type ParsedDraft =
   { plan: Plan; issues: [] } | { plan: null; issues: [PlanIssue, ...PlanIssue[]] };
@@ -17,7 +17,7 @@ class NumberReader {
       const message = typed
         ? `Must be a number, such as 0.5 with a point (it is "${typed}").`
         : 'Must be filled in with a number.';
-      this.issues.push({ field, message });
+      this.issues.push(planIssue(field, message, typed));
     }
     return value;
   }
@@ -40,7 +40,7 @@ class NumberReader {
 function rule(read: NumberReader, field: string, draft: RuleDraft) {
   const { kind, recording } = draft;
   if (recording === '') {
-    read.issues.push({ field: `${field}.recording`, message: 'Choose a recording.' });
+    read.issues.push(planIssue(`${field}.recording`, 'Choose a recording.', recording));
   }
   if (kind === 'events') return { kind, recording, labels: draft.labels };
   return {

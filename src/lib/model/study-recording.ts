@@ -10,3 +10,8 @@ export interface StudyRecording extends RecordingFacts {
   durationS: number;
   eegSites: string[];
 }
+
+/** File names by SHA-256. */
+export function recordingNames(recordings: readonly StudyRecording[]): Map<string, string> {
+  return new Map(recordings.map((each) => [each.sha256, each.name]));
+}

@@ -14,3 +14,4 @@ export {
 } from './study-recordings';
 export { stageFacts, type RunFacts, type StageFacts } from './stage-facts';
 export { changesAfterFirstLook, type AfterFirstLook } from './after-first-look';
+export { planPage } from './plan-page';
