@@ -1,8 +1,6 @@
 import { z } from 'zod';
-import type { Plan, Rule } from '$engine';
-import { correctionIds } from '$engine/correct/registry';
-import { measureIds } from '$engine/measure/registry';
-import { nullIds } from '$engine/null/registry';
+import { correctionIds, measureIds, nullIds, type Plan, type Rule } from '$engine';
+
 import { numberText } from './number-text';
 
 // What a person has typed so far. Numbers stay text, so that "abc" or an empty field survives a

@@ -1,8 +1,5 @@
 import fc from 'fast-check';
-import type { Plan } from '$engine';
-import { correctionIds } from '$engine/correct/registry';
-import { measureIds } from '$engine/measure/registry';
-import { nullIds } from '$engine/null/registry';
+import { correctionIds, measureIds, nullIds, type Plan } from '$engine';
 
 const number = (min: number, max: number) =>
   fc.double({ min, max, noNaN: true }).map((value) => (value === 0 ? 0 : value));

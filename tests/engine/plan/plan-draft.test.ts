@@ -1,11 +1,20 @@
 import fc from 'fast-check';
 import { describe, expect, it } from 'vitest';
-import { planSchema, type Plan } from '$engine';
+import { planHash, planSchema, type Plan } from '$engine';
 import { newDraft, planDraftSchema, planToDraft } from '$lib/model/plan-draft';
 import { draftToPlan } from '$lib/model/plan-parse';
 import { arbitraryPlan } from './arbitrary-plan';
 
 const namesOf = (plan: Plan) => new Map(plan.recordings.map((each) => [each.sha256, each.name]));
+
+/** The same value with the keys of every object in another order. */
+function withKeysTurned<T>(value: T, turn: number): T {
+  if (Array.isArray(value)) return value.map((item: unknown) => withKeysTurned(item, turn)) as T;
+  if (typeof value !== 'object' || value === null) return value;
+  const entries = Object.entries(value).map(([key, item]) => [key, withKeysTurned(item, turn)]);
+  const cut = Math.abs(turn) % (entries.length || 1);
+  return Object.fromEntries([...entries.slice(cut), ...entries.slice(0, cut)].reverse()) as T;
+}
 
 describe('plan drafts', () => {
   it('round-trips every valid plan through the form without changing a bit', () => {
@@ -15,6 +24,18 @@ describe('plan drafts', () => {
         const draft = planToDraft(plan);
         expect(planDraftSchema.safeParse(draft).success).toBe(true);
         expect(draftToPlan(draft, namesOf(plan))).toEqual({ plan, issues: [] });
+      }),
+    );
+  });
+
+  it('keeps its hash whatever the order of keys, and changes it with any value', async () => {
+    await fc.assert(
+      fc.asyncProperty(arbitraryPlan, fc.integer(), async (plan, turn) => {
+        const hash = await planHash(plan);
+        expect(hash).toMatch(/^[0-9a-f]{64}$/);
+        expect(await planHash(withKeysTurned(plan, turn))).toBe(hash);
+        const seed = `${plan.test.seed}x`;
+        expect(await planHash({ ...plan, test: { ...plan.test, seed } })).not.toBe(hash);
       }),
     );
   });

@@ -15,3 +15,4 @@ export {
 export { stageFacts, type RunFacts, type StageFacts } from './stage-facts';
 export { changesAfterFirstLook, type AfterFirstLook } from './after-first-look';
 export { planPage } from './plan-page';
+export { lockPlan, type Locked } from './lock';
