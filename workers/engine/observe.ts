@@ -1,5 +1,4 @@
-import { sumCrossTerms, sumShiftedCrossTerms } from '../kernels/cross-sums';
-import type { Measure, ShiftedRows } from './measure/measure';
+import { sumCrossTerms } from '../kernels/cross-sums';
 import type { RunInput } from './null/model';
 
 /** One condition of one pair as it was recorded, by feature. */
@@ -15,27 +14,28 @@ export interface Observer {
   observe(j: number, k: number, condition: 'a' | 'b', out: Observed): void;
 }
 
-/** An observer of a run's pairs. Cost of a condition: one permutation's. */
+/** An observer of a run's pairs. Cost of a condition: about one permutation's. */
 export function observer(run: RunInput): Observer {
-  const { measure, layout, featureCount } = run;
-  const { epochsA, epochsB } = run.shape;
-  const starts = new Int32Array(Math.max(epochsA, epochsB));
-  const partnerStarts = new Int32Array(starts.length);
+  const { measure, shape, featureCount } = run;
+  const { epochsA, epochsB } = shape;
+  const most = Math.max(epochsA, epochsB);
+  const starts = Int32Array.from({ length: most }, (_, n) => n * 2 * featureCount);
+  const partnerStarts = starts.map((start) => most * 2 * featureCount + start);
+  const phasors = new Float32Array(2 * most * 2 * featureCount);
   const sums = new Float64Array(featureCount * measure.termCount);
   const cross = new Float64Array(featureCount * 2);
   return {
     observe(j, k, condition, out) {
       const from = condition === 'a' ? 0 : epochsA;
-      const epochs = condition === 'a' ? epochsA : epochsB;
-      const stride = 2 * layout.samplesPerEpoch;
-      for (let n = 0; n < epochs; n++) {
-        starts[n] = (j * layout.epochCount + from + n) * stride;
-        partnerStarts[n] = (k * layout.epochCount + from + n) * stride;
+      const epochCount = condition === 'a' ? epochsA : epochsB;
+      for (let n = 0; n < epochCount; n++) {
+        copyKept(run, j, from + n, phasors, starts[n]);
+        copyKept(run, k, from + n, phasors, partnerStarts[n]);
       }
-      const rows = unshifted(run, epochs);
-      sumUnshifted(run, measure, starts, partnerStarts, sums, rows);
-      measure.values(sums, epochs, out.value, featureCount);
-      sumUnshifted(run, crossTerms, starts, partnerStarts, cross, rows);
+      const rows = { epochCount, samplesPerEpoch: featureCount };
+      measure.sumTerms(phasors, starts, partnerStarts, sums, rows);
+      measure.values(sums, epochCount, out.value, featureCount);
+      sumCrossTerms(phasors, starts, partnerStarts, cross, rows);
       for (let x = 0; x < featureCount; x++) {
         out.lagRad[x] = Math.atan2(cross[2 * x + 1], cross[2 * x]);
       }
@@ -43,35 +43,20 @@ export function observer(run: RunInput): Observer {
   };
 }
 
-const crossTerms = { sumTerms: sumCrossTerms, sumShiftedTerms: sumShiftedCrossTerms };
-
-/** Whole windows are read at the plan's times, so a shift of zero; others hold those times only. */
-function sumUnshifted(
+/** Copies one epoch of one site at the plan's times: `[part][frequency][time]`. */
+function copyKept(
   run: RunInput,
-  terms: Pick<Measure, 'sumTerms' | 'sumShiftedTerms'>,
-  jStarts: Int32Array,
-  kStarts: Int32Array,
-  sums: Float64Array,
-  rows: ShiftedRows,
+  site: number,
+  epoch: number,
+  out: Float32Array,
+  start: number,
 ): void {
-  const sum =
-    run.layout.samplesPerEpoch === run.featureCount ? terms.sumTerms : terms.sumShiftedTerms;
-  sum(run.phasors, jStarts, kStarts, sums, rows);
-}
-
-function unshifted(run: RunInput, epochCount: number): ShiftedRows {
-  const { layout } = run;
-  const shifts = new Uint16Array(epochCount);
-  const times = layout.keptSamples.length;
-  return {
-    epochCount,
-    samplesPerEpoch: layout.samplesPerEpoch,
-    frequencyCount: layout.frequencyCount,
-    samplesPerFrequency: layout.samplesPerFrequency,
-    keptSamples: layout.keptSamples,
-    jShifts: shifts,
-    kShifts: shifts,
-    jSamples: new Int32Array(times),
-    kSamples: new Int32Array(times),
-  };
+  const { layout, phasors } = run;
+  const { keptSamples, samplesPerFrequency } = layout;
+  const from = (site * layout.epochCount + epoch) * 2 * layout.samplesPerEpoch;
+  let at = start;
+  for (let row = 0; row < 2 * layout.frequencyCount; row++) {
+    const first = from + row * samplesPerFrequency;
+    for (const sample of keptSamples) out[at++] = phasors[first + sample];
+  }
 }

@@ -1,4 +1,4 @@
-import type { EpochRows, ShiftedRows } from '../engine/measure/measure';
+import type { EpochRows, ShiftedWindow } from '../engine/measure/measure';
 
 /**
  * Sums of u_j u_k* over epochs, at every sample of the rows.
@@ -54,47 +54,41 @@ export function sumCrossTerms(
 }
 
 /**
- * The same at the kept samples of windows that are rotated: feature (f, t) of epoch n takes sample
- * `(keptSamples[t] + shift[n]) mod samplesPerFrequency` of frequency f, each site its own shift.
- * Out: `sums[(f * keptCount + t) * 2 + part]`.
- * Overwrites `sums` and the two scratch lists of samples; allocates nothing.
- * Cost: one complex product a feature and epoch. Source: as above; the rotation is common practice.
+ * Adds u_j u_k* of one epoch at the kept samples of its rotated windows, for many permutations:
+ * time t takes sample `(keptSamples[t] + shift) mod sampleCount`, each site its own shift.
+ * Layout: `j` and `k` `[sample][frequency][part]`; out
+ * `sums[((permutation * timeCount + t) * frequencyCount + f) * 2 + part]`.
+ * Adds to `sums`; allocates nothing; does not check its arguments.
+ * Cost: one complex product a feature and permutation, in f64. Both rows are read in sequence:
+ * gathered from whole series, the same sums wait for memory four times as long.
+ * Source: cross-term as above; the rotation is common practice.
  */
-export function sumShiftedCrossTerms(
-  phasors: Float32Array,
-  jStarts: Int32Array,
-  kStarts: Int32Array,
+export function addShiftedCrossTerms(
+  j: Float32Array,
+  k: Float32Array,
   sums: Float64Array,
-  rows: ShiftedRows,
+  window: ShiftedWindow,
 ): void {
-  const { epochCount, samplesPerEpoch, frequencyCount, samplesPerFrequency } = rows;
-  const { keptSamples, jShifts, kShifts, jSamples, kSamples } = rows;
+  const { frequencyCount, sampleCount, keptSamples, shifts, shiftStride, permutations } = window;
   const timeCount = keptSamples.length;
-  sums.fill(0, 0, frequencyCount * timeCount * 2);
-  for (let n = 0; n < epochCount; n++) {
-    rotate(keptSamples, jShifts[n], samplesPerFrequency, jSamples);
-    rotate(keptSamples, kShifts[n], samplesPerFrequency, kSamples);
-    let out = 0;
-    for (let f = 0; f < frequencyCount; f++) {
-      const j = jStarts[n] + f * samplesPerFrequency;
-      const k = kStarts[n] + f * samplesPerFrequency;
-      for (let t = 0; t < timeCount; t++, out += 2) {
-        const js = j + jSamples[t];
-        const ks = k + kSamples[t];
-        const a = phasors[js];
-        const b = phasors[js + samplesPerEpoch];
-        const c = phasors[ks];
-        const d = phasors[ks + samplesPerEpoch];
+  const rowLength = 2 * frequencyCount;
+  let out = 0;
+  for (let p = 0; p < permutations; p++) {
+    const jShift = shifts[window.jShift + p * shiftStride];
+    const kShift = shifts[window.kShift + p * shiftStride];
+    for (let t = 0; t < timeCount; t++) {
+      const js = keptSamples[t] + jShift;
+      const ks = keptSamples[t] + kShift;
+      const jRow = (js < sampleCount ? js : js - sampleCount) * rowLength;
+      const kRow = (ks < sampleCount ? ks : ks - sampleCount) * rowLength;
+      for (let f = 0; f < rowLength; f += 2, out += 2) {
+        const a = j[jRow + f];
+        const b = j[jRow + f + 1];
+        const c = k[kRow + f];
+        const d = k[kRow + f + 1];
         sums[out] += a * c + b * d;
         sums[out + 1] += b * c - a * d;
       }
     }
-  }
-}
-
-function rotate(kept: Int32Array, shift: number, length: number, samples: Int32Array): void {
-  for (let t = 0; t < kept.length; t++) {
-    const sample = kept[t] + shift;
-    samples[t] = sample < length ? sample : sample - length;
   }
 }

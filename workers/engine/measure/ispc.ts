@@ -1,4 +1,4 @@
-import { sumCrossTerms, sumShiftedCrossTerms } from '../../kernels/cross-sums';
+import { addShiftedCrossTerms, sumCrossTerms } from '../../kernels/cross-sums';
 import { resultantLengths } from '../../kernels/resultants';
 import type { Measure } from './measure';
 
@@ -13,6 +13,6 @@ export const ispc: Measure<'ispc'> = {
   range: [0, 1],
   termCount: 2,
   sumTerms: sumCrossTerms,
-  sumShiftedTerms: sumShiftedCrossTerms,
+  addShiftedTerms: addShiftedCrossTerms,
   values: resultantLengths,
 };

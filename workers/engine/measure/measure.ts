@@ -6,18 +6,18 @@ export interface EpochRows {
   samplesPerEpoch: number;
 }
 
-/** The same with a circular shift of each epoch's window, for nulls that keep every sample. */
-export interface ShiftedRows extends EpochRows {
+/** One epoch's whole window under many circular shifts, for nulls that keep every sample. */
+export interface ShiftedWindow {
   frequencyCount: number;
-  samplesPerFrequency: number;
+  sampleCount: number;
   /** The plan's times as indices among the window's samples. */
   keptSamples: Int32Array;
-  /** Shift of each epoch, samples in 0 .. samplesPerFrequency - 1. */
-  jShifts: Uint16Array;
-  kShifts: Uint16Array;
-  /** Scratch of one entry a kept time. */
-  jSamples: Int32Array;
-  kSamples: Int32Array;
+  /** Shifts of permutation i, 0 .. sampleCount - 1: `shifts[jShift + i * shiftStride]`, k alike. */
+  shifts: Uint16Array;
+  jShift: number;
+  kShift: number;
+  shiftStride: number;
+  permutations: number;
 }
 
 /**
@@ -47,13 +47,16 @@ export interface Measure<Id extends string = string> {
     sums: Float64Array,
     rows: EpochRows,
   ): void;
-  /** The same at the kept samples of windows rotated by each epoch's shift. */
-  sumShiftedTerms(
-    phasors: Float32Array,
-    jStarts: Int32Array,
-    kStarts: Int32Array,
+  /**
+   * Adds one epoch to `sums[((permutation * timeCount + t) * frequencyCount + f) * termCount + term]`
+   * under each permutation's shifts. `j` and `k` hold the epoch's windows of the two sites,
+   * `[sample][frequency][part]`, so that a shift moves whole rows.
+   */
+  addShiftedTerms(
+    j: Float32Array,
+    k: Float32Array,
     sums: Float64Array,
-    rows: ShiftedRows,
+    window: ShiftedWindow,
   ): void;
   /** `values[i]` of a group of `epochCount` epochs from `sums[i * termCount + term]`. */
   values(sums: Float64Array, epochCount: number, values: Float64Array, count: number): void;

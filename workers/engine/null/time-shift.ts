@@ -1,6 +1,6 @@
-import type { DrawShape, NullModel, PairSampler, PermutationRange, RunInput } from './model';
+import type { DrawShape, NullModel, PermutationRange } from './model';
 import { permutationGenerator } from './random';
-import { conditionSampler } from './condition-sampler';
+import { shiftSampler } from './shift-sampler';
 
 /** Shifts are kept as 16-bit numbers. */
 const mostSamples = 65_536;
@@ -30,34 +30,6 @@ function draw(
   }
 }
 
-function sampler(run: RunInput): PairSampler {
-  const { measure, layout } = run;
-  const shifts = new Uint16Array(run.draws);
-  const epochCount = layout.epochCount;
-  const stride = 2 * layout.samplesPerEpoch;
-  const jSamples = new Int32Array(layout.keptSamples.length);
-  const kSamples = new Int32Array(layout.keptSamples.length);
-  return conditionSampler(run, ({ j, k, permutation, from, epochs, sums, jStarts, kStarts }) => {
-    const jRow = (permutation * layout.siteCount + j) * epochCount + from;
-    const kRow = (permutation * layout.siteCount + k) * epochCount + from;
-    for (let n = 0; n < epochs; n++) {
-      jStarts[n] = (j * epochCount + from + n) * stride;
-      kStarts[n] = (k * epochCount + from + n) * stride;
-    }
-    measure.sumShiftedTerms(run.phasors, jStarts, kStarts, sums, {
-      epochCount: epochs,
-      samplesPerEpoch: layout.samplesPerEpoch,
-      frequencyCount: layout.frequencyCount,
-      samplesPerFrequency: layout.samplesPerFrequency,
-      keptSamples: layout.keptSamples,
-      jShifts: shifts.subarray(jRow, jRow + epochs),
-      kShifts: shifts.subarray(kRow, kRow + epochs),
-      jSamples,
-      kSamples,
-    });
-  });
-}
-
 export const timeShift: NullModel<'time-shift'> = {
   id: 'time-shift',
   name: 'Phase-shuffled by time shift',
@@ -71,5 +43,5 @@ export const timeShift: NullModel<'time-shift'> = {
   drawsByteLength: (shape) =>
     shape.permutations * shape.siteCount * (shape.epochsA + shape.epochsB) * 2,
   draw,
-  sampler,
+  sampler: shiftSampler,
 };

@@ -1,6 +1,5 @@
 import type { DrawShape, NullModel, PairSampler, PermutationRange, RunInput } from './model';
 import { permutationGenerator, shuffle } from './random';
-import { conditionSampler } from './condition-sampler';
 
 /** Orders are kept as 16-bit numbers. */
 const mostEpochs = 65_536;
@@ -35,22 +34,40 @@ function draw(
 }
 
 function sampler(run: RunInput): PairSampler {
-  const { measure, layout } = run;
+  const { measure, layout, shape, featureCount } = run;
+  const { epochCount, samplesPerEpoch, siteCount } = layout;
   const orders = new Uint16Array(run.draws);
-  const epochCount = layout.epochCount;
-  const stride = 2 * layout.samplesPerEpoch;
-  return conditionSampler(run, ({ j, k, permutation, from, epochs, sums, jStarts, kStarts }) => {
-    const jRow = (permutation * layout.siteCount + j) * epochCount + from;
-    const kRow = (permutation * layout.siteCount + k) * epochCount + from;
-    for (let n = 0; n < epochs; n++) {
-      jStarts[n] = (j * epochCount + orders[jRow + n]) * stride;
-      kStarts[n] = (k * epochCount + orders[kRow + n]) * stride;
-    }
-    measure.sumTerms(run.phasors, jStarts, kStarts, sums, {
-      epochCount: epochs,
-      samplesPerEpoch: layout.samplesPerEpoch,
-    });
-  });
+  const stride = 2 * samplesPerEpoch;
+  const most = Math.max(shape.epochsA, shape.epochsB);
+  const jStarts = new Int32Array(most);
+  const kStarts = new Int32Array(most);
+  const sums = new Float64Array(featureCount * measure.termCount);
+  const values = new Float64Array(featureCount);
+
+  function place(starts: Int32Array, site: number, p: number, from: number, epochs: number): void {
+    const row = (p * siteCount + site) * epochCount + from;
+    for (let n = 0; n < epochs; n++) starts[n] = (site * epochCount + orders[row + n]) * stride;
+  }
+
+  return {
+    surrogates(j, k, range, first, second) {
+      for (let p = range.from; p < range.to; p++) {
+        for (const [from, epochs, out] of [
+          [0, shape.epochsA, first],
+          [shape.epochsA, shape.epochsB, second],
+        ] as const) {
+          place(jStarts, j, p, from, epochs);
+          place(kStarts, k, p, from, epochs);
+          measure.sumTerms(run.phasors, jStarts, kStarts, sums, {
+            epochCount: epochs,
+            samplesPerEpoch,
+          });
+          measure.values(sums, epochs, values, featureCount);
+          out.set(values, (p - range.from) * featureCount);
+        }
+      }
+    },
+  };
 }
 
 export const trialOrder: NullModel<'trial-order'> = {
