@@ -44,6 +44,7 @@ function secondsPerPair(plan: Plan, axes: Axes, counts: RunCounts): number {
     );
   };
   const first = Math.min(plan.test.permutations, firstPermutations);
+  time(first);
   const warm = time(first);
   const most = Math.ceil((first * wantedS) / Math.max(warm, 1e-4));
   const permutations = Math.min(plan.test.permutations, Math.max(first, most));
@@ -59,7 +60,7 @@ function secondsPerEpoch(plan: Plan, axes: Axes): number {
   );
   const phasors = new Float32Array(job.layout.byteLength / Float32Array.BYTES_PER_ELEMENT);
   const run = () => phasesOfEpoch(job, samples, 0, phasors, 'a sample');
-  run();
+  for (let i = 0; i < 3; i++) run();
   const repeats = Math.max(1, Math.min(50, Math.floor(wantedS / Math.max(seconds(run), 1e-4))));
   const all = seconds(() => {
     for (let i = 0; i < repeats; i++) run();
