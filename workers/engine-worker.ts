@@ -43,7 +43,8 @@ const api: EngineWorkerApi = {
   async conclude(plan, axes, counts, blocks) {
     const maps = mergeBlocks(blocks, axes, plan.test.permutations);
     const outcome = await conclude(plan, axes, counts, maps);
-    return { maps: handedOver(maps), outcome };
+    // Comlink moves what is listed for the answer itself; a part's own list would be ignored.
+    return Comlink.transfer({ maps, outcome }, buffersOf(maps));
   },
 
   async calibrate(plan, { axes, ...counts }) {
@@ -64,10 +65,14 @@ function sourcesOf(recordings: RecordingInput[]): RecordingSource[] {
 
 /** Moves a block's arrays to the page instead of copying them. */
 function handedOver(block: PairBlock): PairBlock {
+  return Comlink.transfer(block, buffersOf(block));
+}
+
+function buffersOf(block: PairBlock): ArrayBuffer[] {
   const buffers = Object.values(block).flatMap((value) =>
     ArrayBuffer.isView(value) && value.buffer instanceof ArrayBuffer ? [value.buffer] : [],
   );
-  return Comlink.transfer(block, [...new Set(buffers)]);
+  return [...new Set(buffers)];
 }
 
 Comlink.expose(api);

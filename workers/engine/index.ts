@@ -4,6 +4,7 @@ export { engineVersion } from './version';
 export { planLimits, planSchema, type Plan, type Rule } from './plan';
 export { PlanError } from './errors';
 export { axesOf, epochReader, planEpochs, screenEpochs, type RecordingSource } from './prepare';
+export { epochKey, withoutLost } from './prepare';
 export {
   consequencesOf,
   type Caution,

@@ -9,12 +9,6 @@ export interface EpochTally {
   lost: LostEpoch[];
 }
 
-/** The planned epochs without those that their samples ruled out, in the same order. */
-export function withoutLost(planned: Epoch[], screened: LostEpoch[]): Epoch[] {
-  const gone = new Set(screened.map(keyOf));
-  return planned.filter((epoch) => !gone.has(keyOf(epoch)));
-}
-
 /** Counts by condition; every moment of the rules is either kept or lost. */
 export function tallyOf(kept: Epoch[], lost: LostEpoch[]): EpochTally {
   const count = (list: { condition: Condition }[], condition: Condition): number =>
@@ -28,6 +22,3 @@ export function tallyOf(kept: Epoch[], lost: LostEpoch[]): EpochTally {
     lost,
   };
 }
-
-const keyOf = ({ condition, recording, onsetS }: Epoch | LostEpoch): string =>
-  `${condition}/${recording}/${onsetS}`;

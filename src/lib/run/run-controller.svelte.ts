@@ -1,11 +1,11 @@
 import { transfer } from 'comlink';
-import { axesOf, engineVersion, planEpochs } from '$engine';
+import { axesOf, engineVersion, planEpochs, withoutLost } from '$engine';
 import type { Axes, Epoch, LostEpoch, PairBlock, Plan, RecordingFacts } from '$engine';
 import type { RunSummary, Timings } from '$lib/model/run';
 import type { RecordingInput, SharedPhases } from '$workers/protocol';
 import { Checkpoints, type RunIdentity } from './checkpoints';
 import { createEngineWorker } from './engine-worker';
-import { tallyOf, withoutLost, type EpochTally } from './epoch-tally';
+import { tallyOf, type EpochTally } from './epoch-tally';
 import { asRunError, RunError } from './errors';
 import { isolationTrouble } from './isolation';
 import { WorkerPool } from './pool';

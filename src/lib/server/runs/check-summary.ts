@@ -1,5 +1,4 @@
-import { engineVersion } from '$engine';
-import type { Epoch, LostEpoch } from '$engine';
+import { engineVersion, epochKey, type Epoch } from '$engine';
 import type { RunSummary } from '$lib/model/run';
 import type { Expectation, LockedPlan } from './context';
 import { ResultRefused } from './refused';
@@ -35,12 +34,12 @@ export function checkSummary(
 }
 
 function checkEpochs(summary: RunSummary, { planned, lost }: Expectation): void {
-  const plannedKeys = new Map(planned.map((epoch) => [keyOf(epoch), epoch]));
-  const lostKeys = new Map(lost.map((epoch) => [keyOf(epoch), epoch]));
+  const plannedKeys = new Map(planned.map((epoch) => [epochKey(epoch), epoch]));
+  const lostKeys = new Map(lost.map((epoch) => [epochKey(epoch), epoch]));
   const seen = new Set<string>();
   const screened = { a: 0, b: 0 };
   for (const epoch of summary.lost) {
-    const key = keyOf(epoch);
+    const key = epochKey(epoch);
     const where = `The epoch at ${epoch.onsetS} s (condition ${epoch.condition.toUpperCase()})`;
     if (seen.has(key)) throw new ResultRefused('epochs-mismatch', `${where} is lost twice.`);
     seen.add(key);
@@ -56,7 +55,7 @@ function checkEpochs(summary: RunSummary, { planned, lost }: Expectation): void 
     }
     if (!byFacts) screened[epoch.condition] += 1;
   }
-  const missing = lost.find((epoch) => !seen.has(keyOf(epoch)));
+  const missing = lost.find((epoch) => !seen.has(epochKey(epoch)));
   if (missing) {
     throw new ResultRefused(
       'epochs-mismatch',
@@ -101,6 +100,3 @@ function checkDistribution(
 
 const countOf = (epochs: Epoch[], condition: 'a' | 'b'): number =>
   epochs.filter((epoch) => epoch.condition === condition).length;
-
-const keyOf = ({ condition, recording, onsetS }: Epoch | LostEpoch | RunSummary['lost'][number]) =>
-  `${condition}/${recording}/${onsetS}`;

@@ -4,3 +4,4 @@ export { openMap, openSlices } from './kept-maps';
 export { readIndices, receiveMap } from './receive-map';
 export { changeRun, createRun, getRun, listRuns, type Run } from './runs';
 export { finishRun, storeResult } from './store-result';
+export { runPage, type RunPage, type RunSize } from './run-page';
