@@ -145,6 +145,12 @@ describe('consequencesOf', () => {
     expect(cautions.map(({ code }) => code)).toContain('epochs-lost');
   });
 
+  test('a window longer than a shift can be drawn for stops the plan', () => {
+    const epoch = epochWith({ fromS: -0.2, toS: 660 });
+    const recordings = inOrder(alternating, { segments: [{ startS: 0, durationS: 900 }] });
+    expect(codes({ null: 'time-shift', epoch }, recordings)).toContain('window-too-long');
+  });
+
   test('phases that no browser can hold stop the plan', () => {
     const sites = Array.from({ length: 500 }, (_, i) => `S${i}`);
     const channels = sites.map((site) => sampleChannel(site));

@@ -1,10 +1,7 @@
 import { describe, expect, test } from 'vitest';
-import {
-  logArrangements,
-  smallestAdjustedP,
-  smallestP,
-} from '../../../workers/engine/consequences/reach';
+import { smallestAdjustedP, smallestP } from '../../../workers/engine/consequences/reach';
 import { chanceIspc, criticalIspc, differenceSd } from '../../../workers/engine/numbers/chance';
+import { nullModelOf, type NullId } from '../../../workers/engine/null/registry';
 import { logChoose } from '../../../workers/engine/numbers/counting';
 import { samplePlan } from '../sample-plan';
 
@@ -47,8 +44,11 @@ describe('reach', () => {
   test('the number of relabellings is exact as far as doubles count', () => {
     expect(Math.exp(logChoose(15, 7))).toBeCloseTo(6435, 6);
     expect(Math.exp(logChoose(49, 6)) / 13_983_816).toBeCloseTo(1, 9);
-    expect(Math.exp(logArrangements('trial-order', { a: 4, b: 5 }, 100))).toBeCloseTo(2880, 6);
-    expect(Math.exp(logArrangements('time-shift', { a: 1, b: 1 }, 100))).toBeCloseTo(10_000, 6);
+    const shape = { permutations: 9, siteCount: 2, epochsA: 4, epochsB: 5, windowSamples: 3 };
+    const arrangements = (id: NullId) => Math.exp(nullModelOf(id).logArrangements(shape));
+    expect(arrangements('labels')).toBeCloseTo(126, 9);
+    expect(arrangements('trial-order')).toBeCloseTo(24 * 120, 6);
+    expect(arrangements('time-shift')).toBeCloseTo(3 ** 9, 6);
   });
 
   test('two-sided p of one test cannot be below twice one in all permutations', () => {

@@ -7,6 +7,7 @@ import type { EpochCounts } from './reach';
 export type CautionCode =
   | 'too-few-epochs'
   | 'too-much-memory'
+  | 'window-too-long'
   | 'few-permutations'
   | 'few-arrangements'
   | 'few-epochs'

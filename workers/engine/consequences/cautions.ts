@@ -9,6 +9,7 @@ export type { Caution, CautionCode } from './caution';
 const rules: CautionRule[] = [
   epochs.tooFewEpochs,
   signal.tooMuchMemory,
+  test.windowTooLong,
   test.fewPermutations,
   test.fewArrangements,
   epochs.fewEpochs,

@@ -1,4 +1,5 @@
 import type { Epoch } from '../types';
+import { nullModelOf } from '../null/registry';
 import { runsTest } from '../numbers/runs-test';
 import { said, widestKernel, type CautionInput, type CautionRule } from './caution';
 
@@ -74,7 +75,7 @@ export const differentRecordings: CautionRule = ({ epochs }) => {
 };
 
 export const conditionsInBlocks: CautionRule = (input) => {
-  if (input.plan.null !== 'labels') return null;
+  if (!nullModelOf(input.plan.null).exchangesLabels) return null;
   const sequences = sequencesByTime(input);
   const { runs, p } = runsTest(sequences);
   if (runs === 0 || p >= 0.05) return null;

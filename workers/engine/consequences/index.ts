@@ -1,6 +1,8 @@
 import type { Plan } from '../plan';
 import type { Epoch, LostEpoch, RecordingFacts } from '../types';
 import { chanceIspc, criticalIspc, differenceSd } from '../numbers/chance';
+import { drawShape } from '../null/draws';
+import { nullModelOf } from '../null/registry';
 import { phaseLayout } from '../phase/layout';
 import type { KernelWidth } from '../phase/method';
 import { phaseMethod } from '../phase/registry';
@@ -9,7 +11,7 @@ import { axesOf } from '../prepare/axes';
 import { windowSamples } from '../prepare/grid';
 import { planEpochs } from '../prepare/plan-epochs';
 import { cautionsOf, type Caution } from './cautions';
-import { logArrangements, smallestAdjustedP, smallestP, type EpochCounts } from './reach';
+import { smallestAdjustedP, smallestP, type EpochCounts } from './reach';
 
 export type { Caution, CautionCode } from './cautions';
 export type { EpochCounts } from './reach';
@@ -66,8 +68,9 @@ export function consequencesOf(
     axes.frequenciesHz,
     axes.samplingRateHz,
   );
-  const arrangements = logArrangements(plan.null, counts, window.count);
-  const mirrored = plan.null === 'labels' && counts.a === counts.b;
+  const model = nullModelOf(plan.null);
+  const shape = drawShape(plan, axes, { epochsA: counts.a, epochsB: counts.b });
+  const arrangements = model.logArrangements(shape);
   const tests = axes.pairs.length * axes.frequenciesHz.length * axes.timesS.length;
   const facts = {
     pairs: axes.pairs.length,
@@ -76,7 +79,12 @@ export function consequencesOf(
     tests,
     epochs: counts,
     lost,
-    smallestP: smallestAdjustedP(plan.test, plan.test.corrections[0], arrangements, mirrored),
+    smallestP: smallestAdjustedP(
+      plan.test,
+      plan.test.corrections[0],
+      arrangements,
+      model.hasTwins(shape),
+    ),
     smallestUncorrectedP: smallestP(plan.test, arrangements),
     arrangements: arrangements > Math.log(1e15) ? null : Math.round(Math.exp(arrangements)),
     chance: { a: orNull(counts.a, chanceIspc), b: orNull(counts.b, chanceIspc) },

@@ -1,25 +1,8 @@
 import type { Plan } from '../plan';
-import { logChoose, logFactorial } from '../numbers/counting';
 
 export interface EpochCounts {
   a: number;
   b: number;
-}
-
-/** ln of the number of different outcomes that the null can draw. */
-export function logArrangements(
-  nullId: Plan['null'],
-  { a, b }: EpochCounts,
-  windowCount: number,
-): number {
-  switch (nullId) {
-    case 'labels':
-      return logChoose(a + b, a);
-    case 'trial-order':
-      return logFactorial(a) + logFactorial(b);
-    case 'time-shift':
-      return (a + b) * Math.log(windowCount);
-  }
 }
 
 /**
@@ -34,17 +17,17 @@ export function smallestP(test: Plan['test'], logArrangementCount: number): numb
 /**
  * The smallest corrected p: maxima over the map are compared in the plan's tail already, so they
  * count once; Benjamini-Hochberg starts from the uncorrected p, when all tests reach it together.
- * Relabelling two conditions of equal size the other way round turns every sign, so that a
- * two-sided maximum is always met twice among all arrangements.
+ * Where every arrangement has a twin of opposite sign (labels of two conditions of equal size), a
+ * two-sided maximum is always met twice among all of them.
  */
 export function smallestAdjustedP(
   test: Plan['test'],
   correction: Plan['test']['corrections'][number],
   logArrangementCount: number,
-  mirrored: boolean,
+  hasTwins: boolean,
 ): number {
   if (correction === 'benjamini-hochberg') return smallestP(test, logArrangementCount);
-  const share = Math.exp(-logArrangementCount) * (mirrored && test.tail === 'two-sided' ? 2 : 1);
+  const share = Math.exp(-logArrangementCount) * (hasTwins && test.tail === 'two-sided' ? 2 : 1);
   return Math.min(1, Math.max(1 / (test.permutations + 1), share));
 }
 

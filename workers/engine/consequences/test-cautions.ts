@@ -1,3 +1,4 @@
+import { nullModelOf } from '../null/registry';
 import { said, widestKernel, type CautionRule } from './caution';
 import { togetherForFalseDiscovery } from './reach';
 
@@ -35,7 +36,7 @@ export const fewArrangements: CautionRule = ({ plan, facts }) => {
 };
 
 export const shortWindowForShifts: CautionRule = ({ plan, facts }) => {
-  if (plan.null !== 'time-shift') return null;
+  if (!nullModelOf(plan.null).needsWholeWindow) return null;
   const widest = widestKernel(facts.kernels);
   const window = plan.epoch.toS - plan.epoch.fromS;
   if (window >= widthsForShifts * widest.timeFwhmS) return null;
@@ -43,6 +44,16 @@ export const shortWindowForShifts: CautionRule = ({ plan, facts }) => {
     code: 'short-window-for-shifts',
     severity: 'attention',
     message: `A window of ${said(window)} s holds only ${said(window / widest.timeFwhmS)} kernel widths at ${said(widest.frequencyHz, 3)} Hz: shifts inside it differ little, so this null is coarse. Lengthen the window or choose trial-shuffled.`,
+  };
+};
+
+export const windowTooLong: CautionRule = ({ plan, window }) => {
+  const { mostWindowSamples, name } = nullModelOf(plan.null);
+  if (window.count <= mostWindowSamples) return null;
+  return {
+    code: 'window-too-long',
+    severity: 'stop',
+    message: `A window of ${said(window.count)} samples is too long for the null "${name}", which takes ${said(mostWindowSamples)}: shorten the window.`,
   };
 };
 

@@ -1,4 +1,5 @@
 import { labelBlockBits, labelBlockCount } from '../../kernels/label-sums';
+import { logChoose } from '../numbers/counting';
 import { labelSampler } from './label-sampler';
 import type { DrawShape, NullModel, PermutationRange } from './model';
 import { permutationGenerator } from './random';
@@ -44,6 +45,10 @@ export const labels: NullModel<'labels'> = {
   needsWholeWindow: false,
   statistic: 'difference',
   statisticName: 'difference A − B',
+  exchangesLabels: true,
+  mostWindowSamples: Infinity,
+  logArrangements: (shape) => logChoose(shape.epochsA + shape.epochsB, shape.epochsA),
+  hasTwins: (shape) => shape.epochsA === shape.epochsB,
   drawsByteLength: (shape) => shape.permutations * labelBlockCount(shape.epochsA + shape.epochsB),
   draw,
   sampler: labelSampler,

@@ -69,6 +69,14 @@ export interface NullModel<Id extends string = string> {
   statistic: 'difference' | 'z-difference';
   /** The statistic in words, for axes and tables. */
   statisticName: string;
+  /** Whether it holds only if the epochs of A and B could have changed places in time. */
+  exchangesLabels: boolean;
+  /** The longest window that can be drawn for, samples. */
+  mostWindowSamples: number;
+  /** ln of the number of different outcomes of a draw: fewer than permutations bound p. */
+  logArrangements(shape: DrawShape): number;
+  /** Whether every outcome has a twin of opposite sign, so that two-sided extremes come in pairs. */
+  hasTwins(shape: DrawShape): boolean;
   drawsByteLength(shape: DrawShape): number;
   /** Writes the draws of a range of permutations; touches no other bytes. */
   draw(seed: string, range: PermutationRange, draws: ArrayBufferLike, shape: DrawShape): void;

@@ -40,6 +40,11 @@ export const timeShift: NullModel<'time-shift'> = {
   needsWholeWindow: true,
   statistic: 'z-difference',
   statisticName: 'difference of z, A − B',
+  exchangesLabels: false,
+  mostWindowSamples: mostSamples,
+  // Only one site's shift against the other's makes a difference.
+  logArrangements: (shape) => (shape.epochsA + shape.epochsB) * Math.log(shape.windowSamples),
+  hasTwins: () => false,
   drawsByteLength: (shape) =>
     shape.permutations * shape.siteCount * (shape.epochsA + shape.epochsB) * 2,
   draw,

@@ -1,3 +1,4 @@
+import { logFactorial } from '../numbers/counting';
 import type { DrawShape, NullModel, PairSampler, PermutationRange, RunInput } from './model';
 import { permutationGenerator, shuffle } from './random';
 
@@ -81,6 +82,11 @@ export const trialOrder: NullModel<'trial-order'> = {
   needsWholeWindow: false,
   statistic: 'z-difference',
   statisticName: 'difference of z, A − B',
+  exchangesLabels: false,
+  mostWindowSamples: Infinity,
+  // Only the order of one site's epochs against the other's makes a difference.
+  logArrangements: (shape) => logFactorial(shape.epochsA) + logFactorial(shape.epochsB),
+  hasTwins: () => false,
   drawsByteLength: (shape) =>
     shape.permutations * shape.siteCount * (shape.epochsA + shape.epochsB) * 2,
   draw,
