@@ -16,7 +16,13 @@ export function connect(databaseUrl: string): { db: Db; pool: pg.Pool } {
   const pool = new pg.Pool({ connectionString: databaseUrl, max: 10 });
   const db = new Kysely<Database>({
     dialect: new PostgresDialect({ pool }),
-    plugins: [new CamelCasePlugin({ maintainNestedObjectKeys: true })],
+    plugins: [
+      new CamelCasePlugin({
+        maintainNestedObjectKeys: true,
+        // lagARad is lag_a_rad, adjustedPLow is adjusted_p_low.
+        underscoreBetweenUppercaseLetters: true,
+      }),
+    ],
   });
   return { db, pool };
 }
