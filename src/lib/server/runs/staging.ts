@@ -1,4 +1,4 @@
-import { Readable, Transform } from 'node:stream';
+import { Readable } from 'node:stream';
 import type { Axes } from '$engine';
 import { npyElements, npyHeaderLimit, parseNpyHeader } from '$lib/model/npy';
 import type { NpyArray, NpyHeader } from '$lib/model/npy';
@@ -42,67 +42,43 @@ export async function stageMap(
   bytes: Readable,
   check: (header: NpyHeader) => void,
 ): Promise<void> {
-  const guard = new NpyGuard(name, check);
-  bytes.on('error', (reason) => guard.destroy(reason));
-  await storage.put(stagedKey(runId, name), bytes.pipe(guard));
+  // A sender that breaks off before anybody reads must not end the process; the reader hears it.
+  bytes.on('error', () => undefined);
+  const checked = Readable.from(checkedNpy(name, bytes, check), { objectMode: false });
+  await storage.put(stagedKey(runId, name), checked);
 }
 
-/** Passes bytes on while they are those of an NPY file whose header holds. */
-class NpyGuard extends Transform {
-  readonly #name: string;
-  readonly #check: (header: NpyHeader) => void;
-  #head: Buffer | null = Buffer.alloc(0);
-  #due = Infinity;
-  #passed = 0;
-
-  constructor(name: string, check: (header: NpyHeader) => void) {
-    super();
-    this.#name = name;
-    this.#check = check;
-  }
-
-  override _transform(chunk: Buffer, _encoding: string, done: (reason?: Error | null) => void) {
-    try {
-      if (this.#head) {
-        this.#head = Buffer.concat([this.#head, chunk]);
-        if (this.#head.length >= npyHeaderLimit) this.#readHead();
-      } else {
-        this.#pass(chunk);
-      }
-      done();
-    } catch (reason) {
-      done(reason as Error);
+/** Passes bytes on while they are those of an NPY file whose header holds. Pulled, never pushed. */
+async function* checkedNpy(
+  name: string,
+  bytes: Readable,
+  check: (header: NpyHeader) => void,
+): AsyncGenerator<Buffer> {
+  let head: Buffer | null = Buffer.alloc(0);
+  let due = Infinity;
+  let passed = 0;
+  const opened = (start: Buffer): Buffer => {
+    const header = headerOf(name, start);
+    check(header);
+    due = header.dataOffset + header.dataLength;
+    head = null;
+    return start;
+  };
+  const counted = (chunk: Buffer): Buffer => {
+    passed += chunk.length;
+    if (passed > due) {
+      throw new ResultRefused('map-shape', `Map ${name} is longer than the ${due} bytes due.`);
     }
+    return chunk;
+  };
+  for await (const chunk of bytes as AsyncIterable<Buffer>) {
+    if (head === null) yield counted(chunk);
+    else if (head.length + chunk.length < npyHeaderLimit) head = Buffer.concat([head, chunk]);
+    else yield counted(opened(Buffer.concat([head, chunk])));
   }
-
-  override _flush(done: (reason?: Error | null) => void) {
-    try {
-      if (this.#head) this.#readHead();
-      if (this.#passed < this.#due)
-        this.#refuse(`ends after ${this.#passed} of ${this.#due} bytes`);
-      done();
-    } catch (reason) {
-      done(reason as Error);
-    }
-  }
-
-  #readHead(): void {
-    const head = this.#head as Buffer;
-    this.#head = null;
-    const header = headerOf(this.#name, head);
-    this.#check(header);
-    this.#due = header.dataOffset + header.dataLength;
-    this.#pass(head);
-  }
-
-  #pass(chunk: Buffer): void {
-    this.#passed += chunk.length;
-    if (this.#passed > this.#due) this.#refuse(`is longer than the ${this.#due} bytes due`);
-    this.push(chunk);
-  }
-
-  #refuse(what: string): never {
-    throw new ResultRefused('map-shape', `Map ${this.#name} ${what}.`);
+  if (head !== null) yield counted(opened(head));
+  if (passed < due) {
+    throw new ResultRefused('map-shape', `Map ${name} ends after ${passed} of ${due} bytes.`);
   }
 }
 
