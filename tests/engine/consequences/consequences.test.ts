@@ -73,6 +73,7 @@ describe('consequencesOf', () => {
   test.each<[CautionCode, Partial<Plan>, RecordingFacts[]?]>([
     ['few-permutations', { test: testWith({ permutations: 19, alpha: 0.01 }) }],
     ['few-permutations', { test: testWith({ corrections: ['benjamini-hochberg'] }) }],
+    ['coarse-p', { test: testWith({ permutations: 199 }) }],
     ['few-arrangements', {}, inOrder('ABABAB')],
     ['few-epochs', {}, inOrder('ABABABAB')],
     ['unequal-epochs', {}, inOrder('AAB'.repeat(20))],

@@ -1,3 +1,4 @@
+import fc from 'fast-check';
 import { describe, expect, test } from 'vitest';
 import { planEpochs } from '../../../workers/engine/prepare/plan-epochs';
 import { samplePlan, sampleRecording, secondRecording, shaOne, shaTwo } from '../sample-plan';
@@ -139,6 +140,46 @@ describe('planEpochs', () => {
     expect(lost).toEqual([
       { condition: 'a', recording: shaOne, onsetS: 5, label: 'cue', reason: 'by-hand' },
     ]);
+  });
+
+  test('whatever the segments and events, each event is kept inside one segment or lost', () => {
+    const pieces = fc.array(
+      fc.record({ gapS: fc.double({ min: 0.3, max: 9, noNaN: true }), durationS: fc.nat(9) }),
+      { maxLength: 8 },
+    );
+    const onsets = fc.array(fc.double({ min: -2, max: 90, noNaN: true }), { maxLength: 30 });
+    fc.assert(
+      fc.property(pieces, onsets, (parts, times) => {
+        let end = 0;
+        const segments = parts.map(({ gapS, durationS }) => {
+          const segment = { startS: end + gapS, durationS };
+          end = segment.startS + durationS;
+          return segment;
+        });
+        const events = times.map((time): [number, string] => [time, 'cue']);
+        const { epochs, lost } = planEpochs(samplePlan(), [
+          sampleRecording(events, { segments }),
+          two,
+        ]);
+        expect(epochs.length + lost.length).toBe(
+          new Set(times.map((time) => Math.round(time * 100) + 0)).size,
+        );
+        for (const { segment, sample, onsetS } of epochs) {
+          const { startS, durationS } = segments[segment];
+          expect(sample - 20 - guard).toBeGreaterThanOrEqual(0);
+          expect(sample + 80 + guard).toBeLessThan(durationS * 100);
+          expect(Math.abs(startS + sample / 100 - onsetS)).toBeLessThanOrEqual(0.005 + 1e-9);
+        }
+        for (const { onsetS } of lost) {
+          const roomy = segments.some(
+            ({ startS, durationS }) =>
+              onsetS - startS > 0.53 && startS + durationS - onsetS > 0.2 + 0.6 + 0.34,
+          );
+          expect(roomy).toBe(false);
+        }
+      }),
+      { numRuns: 300, seed: 11 },
+    );
   });
 
   test('a span with more epochs than can be meant is refused before any is made', () => {

@@ -10,6 +10,7 @@ export type CautionCode =
   | 'window-too-long'
   | 'few-permutations'
   | 'few-arrangements'
+  | 'coarse-p'
   | 'few-epochs'
   | 'epochs-lost'
   | 'unequal-epochs'

@@ -25,6 +25,7 @@ const rules: CautionRule[] = [
   signal.wideKernels,
   signal.lineFrequency,
   signal.sharedSources,
+  test.coarseP,
   test.clusterClaim,
   test.falseDiscoveryDependence,
 ];

@@ -120,7 +120,9 @@ function orderInWords(sequences: boolean[][]): string {
 export const epochsOverlap: CautionRule = ({ epochs, window, axes, facts, plan }) => {
   const byTime = [...epochs].sort(
     (x, y) =>
-      x.recording.localeCompare(y.recording) || x.segment - y.segment || x.sample - y.sample,
+      (x.recording < y.recording ? -1 : x.recording > y.recording ? 1 : 0) ||
+      x.segment - y.segment ||
+      x.sample - y.sample,
   );
   const distances = byTime
     .slice(1)

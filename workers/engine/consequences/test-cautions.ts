@@ -2,6 +2,8 @@ import { nullModelOf } from '../null/registry';
 import { said, widestKernel, type CautionRule } from './caution';
 import { togetherForFalseDiscovery } from './reach';
 
+/** Half-width of a p's 95 % interval at alpha, over alpha, that is worth a word. Common practice, no source. */
+const coarseShare = 0.3;
 /** Windows shorter than this many kernel widths hold few different shifts. Common practice, no source. */
 const widthsForShifts = 10;
 
@@ -44,6 +46,19 @@ export const shortWindowForShifts: CautionRule = ({ plan, facts }) => {
     code: 'short-window-for-shifts',
     severity: 'attention',
     message: `A window of ${said(window)} s holds only ${said(window / widest.timeFwhmS)} kernel widths at ${said(widest.frequencyHz, 3)} Hz: shifts inside it differ little, so this null is coarse. Lengthen the window or choose trial-shuffled.`,
+  };
+};
+
+export const coarseP: CautionRule = ({ plan, facts }) => {
+  const { alpha, permutations } = plan.test;
+  const spread = 1.96 * Math.sqrt(alpha * (1 - alpha));
+  const halfWidth = spread / Math.sqrt(permutations);
+  if (facts.smallestP > alpha || halfWidth <= coarseShare * alpha) return null;
+  const wanted = Math.ceil((spread / (coarseShare * alpha)) ** 2 / 100) * 100;
+  return {
+    code: 'coarse-p',
+    severity: 'note',
+    message: `With ${said(permutations)} permutations a p near ${said(alpha)} is known to ±${said(halfWidth)} only; ${said(wanted)} make it ±${said(coarseShare * alpha)}.`,
   };
 };
 

@@ -1,7 +1,7 @@
 import { PlanError } from '../errors';
 import type { Plan } from '../plan';
 import { guardSamples } from '../phase/guard';
-import type { Condition, Epoch, LossReason, LostEpoch, RecordingFacts } from '../types';
+import type { Condition, Epoch, LossReason, LostEpoch, RecordingFacts, Segment } from '../types';
 import { axesOf } from './axes';
 import { sampleAt, windowSamples } from './grid';
 import { momentsOf, type Moment } from './moments';
@@ -96,18 +96,26 @@ function place(plan: Plan, moment: Moment, reach: Reach): Placed | LossReason {
   );
   if (marked) return 'by-hand';
   const { segments } = recording;
-  for (let segment = 0; segment < segments.length; segment++) {
-    const { startS, durationS } = segments[segment];
-    const sample = sampleAt(onsetS - startS, reach.rateHz);
-    const count = sampleAt(durationS, reach.rateHz);
-    if (sample < 0 || sample >= count) continue;
-    const early = sample - reach.before < 0;
-    const late = sample + reach.after >= count;
-    if (!early && !late) return { segment, sample };
-    const gap = (early && segment > 0) || (late && segment < segments.length - 1);
-    return gap ? 'crosses-gap' : 'guard-leaves-recording';
+  const segment = lastBegun(segments, onsetS, reach.rateHz);
+  if (segment < 0) return 'guard-leaves-recording';
+  const { startS, durationS } = segments[segment];
+  const sample = sampleAt(onsetS - startS, reach.rateHz);
+  const count = sampleAt(durationS, reach.rateHz);
+  const early = sample - reach.before < 0;
+  const late = sample + reach.after >= count;
+  if (!early && !late) return { segment, sample };
+  const gap = (early && segment > 0) || (late && segment < segments.length - 1);
+  return gap ? 'crosses-gap' : 'guard-leaves-recording';
+}
+
+/** The last segment whose first sample is not after the event; -1 before the first. */
+function lastBegun(segments: Segment[], onsetS: number, rateHz: number): number {
+  let low = 0;
+  let high = segments.length;
+  while (low < high) {
+    const middle = (low + high) >> 1;
+    if (sampleAt(onsetS - segments[middle].startS, rateHz) >= 0) low = middle + 1;
+    else high = middle;
   }
-  const last = segments[segments.length - 1];
-  const inside = last && onsetS > segments[0].startS && onsetS < last.startS + last.durationS;
-  return inside ? 'crosses-gap' : 'guard-leaves-recording';
+  return low - 1;
 }
