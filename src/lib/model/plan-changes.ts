@@ -100,3 +100,8 @@ export function planChanges(before: Plan, now: Plan): PlanChange[] {
     return [{ field, name: fieldName(field), before: beforeWords, after }];
   });
 }
+
+/** A plan as people read it: each choice by its name, in the order of the form. */
+export function planInWords(plan: Plan): { field: string; name: string; words: string }[] {
+  return choices(plan).map(([field, words]) => ({ field, name: fieldName(field), words }));
+}

@@ -39,6 +39,11 @@ export function fetchRecording(ref: RecordingRef, options: FetchOptions = {}): P
   return fresh;
 }
 
+/** Whether this browser keeps the recording already, so that reading it costs no download. */
+export async function isKept(ref: RecordingRef): Promise<boolean> {
+  return verified.has(ref.sha256) || (await readKept(ref)) !== null;
+}
+
 /** Forgets every kept recording; never throws, since signing out must not fail over it. */
 export async function clearCache(): Promise<void> {
   verified.clear();

@@ -3,10 +3,11 @@ import { setError, superValidate } from 'sveltekit-superforms';
 import { zod4 } from 'sveltekit-superforms/adapters';
 import { z } from 'zod';
 import { chooseVersion } from '$lib/model/stages';
-import { allow } from '$lib/server/access';
+import { allow, may } from '$lib/server/access';
 import {
   discardDraft,
   getContrast,
+  lockPlan,
   newVersion,
   participantRecordings,
   participantsWithRecordings,
@@ -21,6 +22,11 @@ const renameSchema = z.object({
     .trim()
     .min(1, 'Give the contrast a name.')
     .max(120, 'Use at most 120 characters.'),
+});
+const lockSchema = z.object({
+  version: z.coerce.number().int().min(1),
+  revision: z.coerce.number().int().min(0),
+  reason: z.string().max(2000).default(''),
 });
 const versionSchema = z.object({ fromVersion: z.coerce.number().int().min(1) });
 
@@ -41,11 +47,25 @@ export async function load(event) {
     recordings,
     participants,
     renameForm,
+    mayDownload: may(member.role, 'recording.download'),
     meta: { title: `${contrast.name}: define` },
   };
 }
 
 export const actions = {
+  lock: async (event) => {
+    const member = allow(event, 'plan.lock');
+    const input = lockSchema.safeParse(Object.fromEntries(await event.request.formData()));
+    if (!input.success) return fail(400, { message: 'The form was incomplete. Try again.' });
+    const locked = await lockPlan(db, member, event.params.contrastId, input.data);
+    if (locked.state === 'wrong') return fail(400, { issues: locked.issues });
+    if (locked.state === 'newer') {
+      const message =
+        'The draft was saved or locked by someone else meanwhile. Reload and look again.';
+      return fail(409, { message });
+    }
+    return { hash: locked.hash };
+  },
   newVersion: async (event) => {
     const member = allow(event, 'contrast.write');
     const input = versionSchema.safeParse(Object.fromEntries(await event.request.formData()));

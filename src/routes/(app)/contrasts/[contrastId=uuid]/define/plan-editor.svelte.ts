@@ -7,6 +7,8 @@ import { draftToPlan } from '$lib/model/plan-parse';
 import { recordingNames, type StudyRecording } from '$lib/model/study-recording';
 import { Autosave, type SaveTarget } from './autosave.svelte';
 import { History } from './history';
+import type { Machine } from './machine.svelte';
+import { screenedEpochs } from './screened';
 import { goodSites, siteChoices, usedRecordings, type SiteChoice } from './site-choices';
 
 export interface EditorStart extends SaveTarget {
@@ -45,6 +47,7 @@ export class PlanEditor {
   readonly save: Autosave;
   readonly editable: boolean;
   #previous: Plan | null = null;
+  #machine: Machine | null = null;
   readonly #history: History;
 
   readonly names = $derived(recordingNames(this.recordings));
@@ -52,7 +55,20 @@ export class PlanEditor {
   readonly plan = $derived<Plan | null>(this.#parsed.plan);
   /** A plan for the numbers beside the form; its texts may be stand-ins. */
   readonly countable = $derived(draftToPlan(withTexts(this.draft), this.names).plan);
-  readonly #check = $derived(this.countable ? checkPlan(this.countable, this.recordings) : null);
+  readonly #screened = $derived(
+    this.countable
+      ? screenedEpochs(
+          this.countable,
+          this.recordings,
+          this.#machine?.lostOf(this.countable) ?? null,
+        )
+      : null,
+  );
+  /** The limits in µV are in the counts. */
+  readonly screened = $derived(this.#screened !== null);
+  readonly #check = $derived(
+    this.countable ? checkPlan(this.countable, this.recordings, this.#screened ?? undefined) : null,
+  );
   readonly consequences = $derived<Consequences | null>(this.#check?.consequences ?? null);
   readonly issues = $derived<PlanIssue[]>([...this.#parsed.issues, ...(this.#check?.issues ?? [])]);
   readonly sites = $derived<SiteChoice[]>(siteChoices(usedRecordings(this.draft, this.recordings)));
@@ -60,7 +76,8 @@ export class PlanEditor {
     this.#previous && this.plan ? planChanges(this.#previous, this.plan) : [],
   );
 
-  constructor(start: EditorStart) {
+  constructor(start: EditorStart, machine: Machine) {
+    this.#machine = machine;
     this.draft = start.draft;
     this.recordings = start.recordings;
     this.editable = start.editable;
