@@ -3,6 +3,7 @@ export const demoPassword = 'tide-comes-in-twice';
 
 export const demoTeam = 'Tidewater Rhythm Lab';
 
+/** @type {{ email: string; name: string; role: import('../../src/lib/model/role').Role }[]} */
 export const demoAccounts = [
   { email: 'lead@tidewater.example', name: 'Nell Harrow', role: 'lead' },
   { email: 'researcher@tidewater.example', name: 'Ida Marlow', role: 'researcher' },

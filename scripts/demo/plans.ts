@@ -2,17 +2,17 @@ import { planSchema, type Plan } from '$engine';
 import { sites } from './simulate';
 
 /** What the demo's plans share; each names its own recording, sites and size. */
-function base(recording: { sha256: string; name: string }, participant: string): Plan {
+function base({ sha256, name }: { sha256: string; name: string }, participant: string): Plan {
   const rule = (label: string) => ({
     kind: 'events' as const,
-    recording: recording.sha256,
+    recording: sha256,
     labels: [label],
   });
   return {
     format: 'nullwright-plan/1',
     question: '',
     participant,
-    recordings: [recording],
+    recordings: [{ sha256, name }],
     a: { name: 'cued', rules: [rule('tone/cued')] },
     b: { name: 'free', rules: [rule('tap/free')] },
     epoch: {
@@ -48,8 +48,7 @@ export function finishedPlan(recording: { sha256: string; name: string }): Plan 
   const plan = base(recording, 'P02');
   plan.question =
     'Do left motor and right parietal sites synchronise more when the beat is given than when it is kept from memory?';
-  plan.sites =
-    'Fp1 Fp2 F7 F3 Fz F4 F8 FC6 T7 C3 Cz C4 T8 P7 P3 Pz P4 P8 O1 O2'.split(' ');
+  plan.sites = 'Fp1 Fp2 F7 F3 Fz F4 F8 FC6 T7 C3 Cz C4 T8 P7 P3 Pz P4 P8 O1 O2'.split(' ');
   return planSchema.parse(plan);
 }
 

@@ -1,14 +1,13 @@
 import { mkdtemp, rm, writeFile } from 'node:fs/promises';
 import { tmpdir } from 'node:os';
 import path from 'node:path';
-import { bytesOf, engineVersion, writeEdf, type Plan } from '$engine';
+import { bytesOf, engineVersion, planHash, writeEdf, type Plan } from '$engine';
 import { planToDraft } from '$lib/model/plan-draft';
-import type { Role } from '$lib/model/role';
 import type { Member } from '$lib/server/access';
 import { createPerson } from '$lib/server/accounts/people';
 import { hashPassword } from '$lib/server/accounts/passwords';
 import { createContrast, lockPlan, saveDraft } from '$lib/server/contrasts';
-import { db } from '$lib/server/database';
+import { db, type Db } from '$lib/server/database';
 import { ingestRecording, recordingFacts } from '$lib/server/recordings';
 import { createRun, storeResult } from '$lib/server/runs';
 import { storage } from '$lib/server/storage';
@@ -32,16 +31,15 @@ interface Kept {
 }
 
 /**
- * Fills an empty database with the invented laboratory: its people, a study of simulated
- * recordings, a contrast that has been run and one that waits. Does nothing where it stands.
+ * Makes the invented laboratory: its people, a study of simulated recordings, a contrast that has
+ * been run and one that waits. Each step asks first what stands, so that a start that was killed
+ * half-way is finished by the next.
  */
 export async function seedDemo(say: (line: string) => void): Promise<void> {
   try {
-    const known = await db.selectFrom('team').select('id').where('name', '=', demoTeam).execute();
-    if (known.length > 0) return;
+    if (await demoStands()) return;
     say('seeding the demo (simulated recordings, one finished run)');
-    const members = await seedPeople();
-    const researcher = members.researcher;
+    const researcher = await seedPeople();
     const studyId = await seedStudy(researcher);
     const recordings = new Map<string, Kept>();
     for (const participant of participants) {
@@ -49,45 +47,81 @@ export async function seedDemo(say: (line: string) => void): Promise<void> {
     }
     const first = recordings.get('P01')!;
     const second = recordings.get('P02')!;
-    await seedContrast(researcher, studyId, 'Every pair, P01', readyPlan(first));
+    await seedContrast(researcher, { studyId, name: 'Every pair, P01', plan: readyPlan(first) });
     const plan = finishedPlan(second);
-    const done = await seedContrast(researcher, studyId, 'Cued against free tapping', plan);
-    await seedRun(researcher, { studyId, ...done, plan, recording: second });
+    const contrastId = await seedContrast(researcher, { studyId, name: finishedName, plan });
+    await seedRun(researcher, { studyId, contrastId, plan, recording: second });
   } finally {
     await db.destroy();
   }
 }
 
-async function seedPeople(): Promise<Record<Role, Member>> {
+const finishedName = 'Cued against free tapping';
+
+/** The finished run is the seed's last step. */
+async function demoStands(): Promise<boolean> {
+  const run = await db
+    .selectFrom('run')
+    .innerJoin('team', 'team.id', 'run.teamId')
+    .select('run.id')
+    .where('team.name', '=', demoTeam)
+    .where('run.state', '=', 'finished')
+    .executeTakeFirst();
+  return run !== undefined;
+}
+
+/** The demo's people and team; answers the researcher, who makes everything else. */
+async function seedPeople(): Promise<Member> {
   const passwordHash = await hashPassword(demoPassword);
   return db.transaction().execute(async (trx) => {
-    const team = await trx
-      .insertInto('team')
-      .values({ name: demoTeam, simulated: true })
-      .returning('id')
+    const known = await trx
+      .selectFrom('team')
+      .select('id')
+      .where('name', '=', demoTeam)
+      .executeTakeFirst();
+    const teamId = known?.id ?? (await insertTeam(trx, passwordHash));
+    const person = await trx
+      .selectFrom('member')
+      .innerJoin('person', 'person.id', 'member.personId')
+      .select(['person.id', 'person.name'])
+      .where('member.teamId', '=', teamId)
+      .where('member.role', '=', 'researcher')
       .executeTakeFirstOrThrow();
-    const members: Partial<Record<Role, Member>> = {};
-    for (const account of demoAccounts) {
-      const { email, name } = account;
-      const role = account.role as Role;
-      const personId = await createPerson(trx, { email, name, passwordHash });
-      await trx.insertInto('member').values({ teamId: team.id, personId, role }).execute();
-      members[role] = {
-        personId,
-        personName: name,
-        teamId: team.id,
-        teamName: demoTeam,
-        teamSimulated: true,
-        role,
-      };
-    }
-    return members as Record<Role, Member>;
+    return {
+      personId: person.id,
+      personName: person.name,
+      teamId,
+      teamName: demoTeam,
+      teamSimulated: true,
+      role: 'researcher',
+    };
   });
 }
 
+async function insertTeam(trx: Db, passwordHash: string): Promise<string> {
+  const team = await trx
+    .insertInto('team')
+    .values({ name: demoTeam, simulated: true })
+    .returning('id')
+    .executeTakeFirstOrThrow();
+  for (const { email, name, role } of demoAccounts) {
+    const personId = await createPerson(trx, { email, name, passwordHash });
+    await trx.insertInto('member').values({ teamId: team.id, personId, role }).execute();
+  }
+  return team.id;
+}
+
 async function seedStudy(member: Member): Promise<string> {
+  const name = 'Paced tapping';
+  const known = await db
+    .selectFrom('study')
+    .select('id')
+    .where('teamId', '=', member.teamId)
+    .where('name', '=', name)
+    .executeTakeFirst();
+  if (known) return known.id;
   const study = await createStudy(db, member, {
-    name: 'Paced tapping',
+    name,
     description:
       'Simulated. Taps to a beat that is given (cued) against taps to a beat kept from memory (free).',
     simulated: true,
@@ -128,37 +162,65 @@ async function seedRecording(
       keepIdentification: false,
       simulated: true,
     });
-    if (stored.kind !== 'stored') throw new Error(`${name} is in the database already`);
-    return { sha256: stored.sha256, name, bytes };
+    // What is stored is what was written: nothing in its header identifies anybody.
+    const { sha256 } = await db
+      .selectFrom('recording')
+      .select('sha256')
+      .where('teamId', '=', member.teamId)
+      .where('id', '=', stored.id)
+      .executeTakeFirstOrThrow();
+    return { sha256, name, bytes };
   } finally {
     await rm(folder, { recursive: true });
   }
 }
 
-async function seedContrast(member: Member, studyId: string, name: string, plan: Plan) {
-  const contrast = await createContrast(db, member, { studyId, name, question: plan.question });
-  if (!contrast.ok) throw new Error(contrast.message);
+async function seedContrast(
+  member: Member,
+  { studyId, name, plan }: { studyId: string; name: string; plan: Plan },
+): Promise<string> {
+  const known = await db
+    .selectFrom('contrast')
+    .select('id')
+    .where('studyId', '=', studyId)
+    .where('name', '=', name)
+    .executeTakeFirst();
+  const contrastId = known?.id ?? (await made(member, { studyId, name, question: plan.question }));
+  const row = await db
+    .selectFrom('plan')
+    .select(['revision', 'lockedAt'])
+    .where('contrastId', '=', contrastId)
+    .executeTakeFirstOrThrow();
+  if (row.lockedAt) return contrastId;
   const draft = planToDraft(plan);
-  const saved = await saveDraft(db, member, contrast.id, { version: 1, basedOn: 1, draft });
+  const basedOn = row.revision;
+  const saved = await saveDraft(db, member, contrastId, { version: 1, basedOn, draft });
   if (saved.state !== 'saved') throw new Error(`${name}: the draft was not saved`);
   const { revision } = saved;
-  const locked = await lockPlan(db, member, contrast.id, { version: 1, revision, reason: '' });
-  if (locked.state !== 'locked') {
-    throw new Error(`${name}: the plan was not locked: ${JSON.stringify(locked)}`);
-  }
-  return { contrastId: contrast.id, planHash: locked.hash };
+  const locked = await lockPlan(db, member, contrastId, { version: 1, revision, reason: '' });
+  if (locked.state !== 'locked') throw new Error(`${name}: ${JSON.stringify(locked)}`);
+  return contrastId;
+}
+
+async function made(
+  member: Member,
+  contrast: { studyId: string; name: string; question: string },
+): Promise<string> {
+  const result = await createContrast(db, member, contrast);
+  if (!result.ok) throw new Error(result.message);
+  return result.id;
 }
 
 async function seedRun(
   member: Member,
-  run: { studyId: string; contrastId: string; planHash: string; plan: Plan; recording: Kept },
+  run: { studyId: string; contrastId: string; plan: Plan; recording: Kept },
 ): Promise<void> {
   const { sha256, bytes } = run.recording;
   const [facts] = await recordingFacts(db, member.teamId, {
     studyId: run.studyId,
     sha256s: [sha256],
   });
-  const asked = { planHash: run.planHash, engineVersion, workerCount: 1 };
+  const asked = { planHash: await planHash(run.plan), engineVersion, workerCount: 1 };
   const { id } = await createRun(db, member, run.contrastId, asked);
   const result = await runHeadless(run.plan, [{ facts, source: bytesOf(bytes) }]);
   await storeResult(db, storage, member, id, result, result.summary);
