@@ -19,7 +19,7 @@ const schema = z.object({
     .number()
     .int()
     .positive()
-    .default(2 * 1024 ** 3),
+    .default(2_000_000_000),
   LOG_LEVEL: z.enum(['trace', 'debug', 'info', 'warn', 'error', 'silent']).default('info'),
 });
 
