@@ -25,12 +25,6 @@ export interface SharedDraws {
   buffer: SharedArrayBuffer;
 }
 
-export interface RunShape {
-  axes: Axes;
-  phasesByteLength: number;
-  drawsByteLength: number;
-}
-
 export interface EngineWorkerApi {
   /** Reads the samples of these epochs and says which break a limit of the plan. */
   screen(plan: Plan, recordings: RecordingInput[], epochs: Epoch[]): Promise<LostEpoch[]>;
@@ -70,7 +64,10 @@ export interface EngineWorkerApi {
     counts: { epochsA: number; epochsB: number },
     blocks: PairBlock[],
   ): Promise<{ maps: PairBlock; outcome: Outcome }>;
-  /** Seconds a pair and permutation cost here for this plan's sizes, measured on a small sample. */
+  /**
+   * Seconds that one pair under all permutations, and one epoch's phases, cost one worker here for
+   * this plan's sizes, measured on a small sample.
+   */
   calibrate(
     plan: Plan,
     counts: { epochsA: number; epochsB: number; axes: Axes },
