@@ -41,3 +41,4 @@ export { tailExceedances, tailSigns, tailStatistic } from './correct/tail';
 export { ascending, countAtLeast } from './correct/distribution';
 export { canonicalJson } from './canonical';
 export { planHash, runDigest, sha256Hex, type RunCounts } from './digest';
+export { phaseRose, rosePetals, type Rose } from './phase/rose';

@@ -35,7 +35,9 @@ export function formatSigned(value: number | null | undefined, digits = 0): stri
  */
 export function formatP(p: number | null | undefined): string {
   if (p === null || p === undefined || !Number.isFinite(p)) return absent;
-  if (p >= 0.0001 || p === 0) return formatNumber(p, 4);
+  // Only an interval's end can be 0 exactly.
+  if (p === 0) return '0';
+  if (p >= 0.0001) return formatNumber(p, 4);
   return p.toLocaleString(locale, { maximumSignificantDigits: 2, maximumFractionDigits: 20 });
 }
 
