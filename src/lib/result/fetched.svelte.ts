@@ -1,0 +1,59 @@
+/**
+ * One thing fetched by key, with its states. What was shown stays until the next has arrived, so
+ * that walking with the arrow keys does not flicker; `shownKey` says whose it is.
+ */
+export class Fetched<Value> {
+  status = $state.raw<'idle' | 'loading' | 'ready' | 'failed'>('idle');
+  value = $state.raw<Value | null>(null);
+  shownKey = $state.raw<string | null>(null);
+  message = $state.raw('');
+
+  readonly #get: (key: string, signal: AbortSignal) => Promise<Value>;
+  readonly #kept: { key: string; value: Value }[] = [];
+  #wanted: string | null = null;
+  #under: AbortController | null = null;
+
+  constructor(get: (key: string, signal: AbortSignal) => Promise<Value>) {
+    this.#get = get;
+  }
+
+  want(key: string): void {
+    if (key === this.#wanted) return;
+    this.#wanted = key;
+    this.#under?.abort();
+    const kept = this.#kept.find((one) => one.key === key);
+    if (kept) this.#show(key, kept.value);
+    else void this.#load(key);
+  }
+
+  retry(): void {
+    if (this.#wanted !== null) void this.#load(this.#wanted);
+  }
+
+  async #load(key: string): Promise<void> {
+    const under = new AbortController();
+    this.#under = under;
+    this.status = 'loading';
+    try {
+      const value = await this.#get(key, under.signal);
+      this.#keep(key, value);
+      if (key === this.#wanted) this.#show(key, value);
+    } catch (reason) {
+      if (under.signal.aborted || key !== this.#wanted) return;
+      this.status = 'failed';
+      this.message = reason instanceof Error ? reason.message : String(reason);
+    }
+  }
+
+  #show(key: string, value: Value): void {
+    this.value = value;
+    this.shownKey = key;
+    this.status = 'ready';
+  }
+
+  /** A finished run never changes; only memory limits what is kept. */
+  #keep(key: string, value: Value): void {
+    this.#kept.push({ key, value });
+    if (this.#kept.length > 24) this.#kept.shift();
+  }
+}
