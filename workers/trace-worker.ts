@@ -9,7 +9,7 @@ import { bytesOfUrl } from './trace/url-source';
 
 const PIECE_BYTES = 4 * 1024 * 1024;
 const TILE_BYTES = 512 * 1024;
-const PYRAMID_BYTES = 64 * 1024 * 1024;
+const PYRAMID_BYTES = 96 * 1024 * 1024;
 
 let file: EdfFile | null = null;
 let traceFile: TraceFile | null = null;

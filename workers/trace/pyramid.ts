@@ -68,7 +68,7 @@ function fillFromBelow(below: PyramidLevel, level: PyramidLevel, out: Int16Array
 
 /** Samples under a bin of the finest level, so that the pyramid of all data keeps within `mostBytes`. */
 export function chooseBase(fileBytes: number, mostBytes: number): number {
-  let base = 16;
+  let base = 8;
   // Two values for each bin, and a third more for the levels above.
   while ((fileBytes / base) * 2 * (4 / 3) > mostBytes) base *= 2;
   return base;

@@ -121,16 +121,17 @@ function addNarrowBins(
   let bin = Math.max(first, binAt(from));
   for (let c = from; c < to; c++) {
     const stop = Math.min(end, binAt(c + 1));
-    let least = low[c];
-    let most = high[c];
+    let least = 32767;
+    let most = -32768;
     for (; bin < stop; bin++) {
       const binLeast = values[at + 2 * bin];
       const binMost = values[at + 2 * bin + 1];
       if (binLeast < least) least = binLeast;
       if (binMost > most) most = binMost;
     }
-    low[c] = least;
-    high[c] = most;
+    if (least > most) continue;
+    if (least < low[c]) low[c] = least;
+    if (most > high[c]) high[c] = most;
   }
 }
 
@@ -190,15 +191,17 @@ function addDense(
   let s = Math.max(0, Math.ceil((from - x0) / step));
   for (let c = from; c < to; c++) {
     const stop = Math.min(samples.length, Math.ceil((c + 1 - x0) / step));
-    let least = low[c];
-    let most = high[c];
+    // Whole numbers throughout: comparing with the columns' floats would cost several times more.
+    let least = 32767;
+    let most = -32768;
     for (; s < stop; s++) {
       const value = samples[s];
       if (value < least) least = value;
       if (value > most) most = value;
     }
-    low[c] = least;
-    high[c] = most;
+    if (least > most) continue;
+    if (least < low[c]) low[c] = least;
+    if (most > high[c]) high[c] = most;
   }
 }
 
@@ -218,14 +221,29 @@ function join({ low, high }: Extents, count: number): void {
   }
 }
 
-/** Middle of the extents: where the row's centre line lies. */
-export function middleOf({ low, high }: Extents, count: number): number {
+/**
+ * Where the row's centre line lies, and how far the trace usually reaches from below it to above
+ * (root mean squares of both sides); NaN where nothing is drawn.
+ */
+export function summarise(
+  { low, high }: Extents,
+  count: number,
+): { middle: number; reach: number } {
   let sum = 0;
   let filled = 0;
   for (let c = 0; c < count; c++) {
     if (low[c] > high[c]) continue;
-    sum += (low[c] + high[c]) / 2;
+    sum += low[c] + high[c];
     filled++;
   }
-  return filled > 0 ? sum / filled : 0;
+  if (filled === 0) return { middle: 0, reach: NaN };
+  const middle = sum / filled / 2;
+  let above = 0;
+  let below = 0;
+  for (let c = 0; c < count; c++) {
+    if (low[c] > high[c]) continue;
+    above += (high[c] - middle) ** 2;
+    below += (low[c] - middle) ** 2;
+  }
+  return { middle, reach: Math.sqrt(above / filled) + Math.sqrt(below / filled) };
 }

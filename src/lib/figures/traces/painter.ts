@@ -1,4 +1,4 @@
-import { fillExtents, middleOf, needsSamples, type Columns, type Extents } from './extents';
+import { fillExtents, needsSamples, summarise, type Columns, type Extents } from './extents';
 import { firstEventAt, gapsIn, timeTicks, type TraceEvent } from './marks';
 import { drawRow, packColour, type Picture } from './raster';
 import type { Span } from './trace-view.svelte';
@@ -44,8 +44,11 @@ export class TracePainter {
     this.over = overCanvas.getContext('2d')!;
   }
 
-  /** Returns the columns that were drawn, so that the data can be asked for what they need. */
-  draw(scene: Scene): { columns: Columns; needsSamples: boolean } {
+  /**
+   * Returns the columns that were drawn, so that the data can be asked for what they need, and how
+   * far the voltage channels reach, microvolts.
+   */
+  draw(scene: Scene): { columns: Columns; needsSamples: boolean; reachesUv: number[] } {
     const scale = this.fit(scene);
     const { width } = this.picture;
     const secondsPerColumn = scene.span.widthS / width;
@@ -53,8 +56,8 @@ export class TracePainter {
     const startS = Math.round(scene.span.startS / secondsPerColumn) * secondsPerColumn;
     const columns = { startS, secondsPerColumn, count: width };
     this.drawUnder(scene, columns);
-    this.drawTraces(scene, columns, scale);
-    return { columns, needsSamples: needsSamples(scene.data, columns) };
+    const reachesUv = this.drawTraces(scene, columns, scale);
+    return { columns, needsSamples: needsSamples(scene.data, columns), reachesUv };
   }
 
   private fit({ widthPx, heightPx }: Scene): number {
@@ -75,29 +78,31 @@ export class TracePainter {
     return density;
   }
 
-  private drawTraces(scene: Scene, columns: Columns, scale: number): void {
+  private drawTraces(scene: Scene, columns: Columns, scale: number): number[] {
     const { data, rows } = scene;
     const style = getComputedStyle(this.overCanvas);
     const ink = packColour(style.getPropertyValue('--ink'));
     const mist = packColour(style.getPropertyValue('--mist'));
     const rowHeight = this.picture.height / Math.max(1, rows.length);
+    const reachesUv: number[] = [];
     this.picture.pixels.fill(0);
     rows.forEach(({ channel, bad }, row) => {
       fillExtents(data, channel, columns, this.extents);
+      const { middle, reach } = summarise(this.extents, columns.count);
       const { unit, perStep } = data.file.channels[channel];
-      const stepsPerRow =
-        unit === 'uV' && perStep !== null
-          ? scene.microvoltsPerRow / perStep
-          : scene.stepsPerRow(channel);
+      const isVoltage = unit === 'uV' && perStep !== null;
+      if (isVoltage && !bad) reachesUv.push(reach * Math.abs(perStep));
+      const stepsPerRow = isVoltage ? scene.microvoltsPerRow / perStep : scene.stepsPerRow(channel);
       drawRow(this.picture, this.extents, {
         centre: (row + 0.5) * rowHeight,
-        middle: middleOf(this.extents, columns.count),
+        middle,
         pixelsPerStep: rowHeight / stepsPerRow,
         colour: bad ? mist : ink,
         thickness: 1.1 * Math.max(1, scale),
       });
     });
     this.over.putImageData(this.image!, 0, 0);
+    return reachesUv;
   }
 
   private drawUnder(scene: Scene, columns: Columns): void {

@@ -35,34 +35,13 @@ function digitalRange(data: TraceData, channel: number): number {
 }
 
 /**
- * A first height of a row in microvolts: what half of the channels stay within over about a
- * second, as 1, 2 or 5 times a power of ten. Null until an envelope is there.
+ * A height of a row in microvolts that half of the channels fit into, as 1, 2 or 5 times a power
+ * of ten, from how far they usually reach; null when there is none to go by.
  */
-export function firstScale(data: TraceData): number | null {
-  const piece = data.pyramids.findIndex((arrays) => arrays !== null);
-  if (piece < 0) return null;
-  const typical = data.file.channels.flatMap((channel, c) => {
-    if (channel.unit !== 'uV' || channel.perStep === null) return [];
-    const levels = data.levelsOf(piece, c);
-    const aboutSecond = levels.findLast((level) => level.samplesPerBin <= channel.samplingRateHz);
-    const { at, binCount } = aboutSecond ?? levels[0];
-    const values = data.pyramids[piece]![c];
-    const ranges = Array.from(
-      { length: binCount },
-      (_, bin) => values[at + 2 * bin + 1] - values[at + 2 * bin],
-    );
-    return [median(ranges) * Math.abs(channel.perStep)];
-  });
-  const range = median(typical);
-  return range > 0 ? niceAbove(range) : 100;
-}
-
-function median(values: number[]): number {
-  const sorted = [...values].sort((a, b) => a - b);
-  return sorted[Math.floor(sorted.length / 2)] ?? 0;
-}
-
-function niceAbove(value: number): number {
-  const power = 10 ** Math.floor(Math.log10(value));
-  return [1, 2, 5, 10].find((step) => step * power >= value)! * power;
+export function fittingScale(reachesUv: number[]): number | null {
+  const sorted = reachesUv.filter((reach) => reach > 0).sort((a, b) => a - b);
+  if (sorted.length === 0) return null;
+  const wanted = 1.5 * sorted[Math.floor(sorted.length / 2)];
+  const power = 10 ** Math.floor(Math.log10(wanted));
+  return [1, 2, 5, 10].find((step) => step * power >= wanted)! * power;
 }

@@ -14,12 +14,15 @@ export class TraceView {
   target = $state.raw<Span>({ startS: 0, widthS: 10 });
   /** Microvolts in the height of a row. */
   microvoltsPerRow = $state(100);
+  /** Whether the rows' height follows what is in view, until the person sets it. */
+  isFitting = $state(true);
   rowsShown = $state(1);
   firstRow = $state(0);
   /** The channel that the keyboard acts on. */
   chosen = $state(0);
   /** What is drawn: follows the target. Not reactive, it changes every frame. */
   shown: Span = { startS: 0, widthS: 10 };
+  private fittedWidthS = 0;
 
   constructor(
     readonly rowCount: number,
@@ -69,6 +72,21 @@ export class TraceView {
     const index = steps.indexOf(lead) + direction + 3;
     const next = steps[index % 3] * 10 ** (exponent + Math.floor(index / 3) - 1);
     this.microvoltsPerRow = Math.min(1e6, Math.max(0.1, next));
+    this.isFitting = false;
+  }
+
+  /** Takes a height that fits, once for each width of the window, so that scrolling keeps it. */
+  fitRows(microvolts: number | null): void {
+    const isSettled = this.shown === this.target && this.fittedWidthS === this.target.widthS;
+    if (!this.isFitting || microvolts === null || isSettled) return;
+    if (this.shown === this.target) this.fittedWidthS = this.target.widthS;
+    this.microvoltsPerRow = microvolts;
+  }
+
+  /** From now on the rows' height follows what is in view again. */
+  followRows(): void {
+    this.fittedWidthS = 0;
+    this.isFitting = true;
   }
 
   /** Chooses a row, and brings it into view. */
