@@ -6,8 +6,10 @@ import type { Plan } from './plan';
 import type { Axes } from './types';
 
 const firstPermutations = 64;
-/** Long enough for the compiler and the clock, short enough for a form. */
-const wantedS = 0.08;
+/** Compilers need several goes before they give a loop its final speed; a form can wait this long. */
+const wantedS = 0.4;
+const fewestGoes = 3;
+const mostGoes = 60;
 /** The sample's memory stays small; cost is linear in epochs beyond. */
 const mostEpochs = 400;
 
@@ -43,12 +45,14 @@ function secondsPerPair(plan: Plan, axes: Axes, counts: RunCounts): number {
       computePairs(short, pair, { from: 0, to: 1 }, { buffer, ...sample }, { buffer: draws }),
     );
   };
-  const first = Math.min(plan.test.permutations, firstPermutations);
-  time(first);
-  const warm = time(first);
-  const most = Math.ceil((first * wantedS) / Math.max(warm, 1e-4));
-  const permutations = Math.min(plan.test.permutations, Math.max(first, most));
-  return (Math.max(1, share) * time(permutations) * plan.test.permutations) / permutations;
+  const { permutations } = plan.test;
+  let count = Math.min(permutations, firstPermutations);
+  const each = fastest(() => {
+    const cost = time(count) / count;
+    count = Math.min(permutations, 2 * count);
+    return cost;
+  });
+  return Math.max(1, share) * each * permutations;
 }
 
 function secondsPerEpoch(plan: Plan, axes: Axes): number {
@@ -60,12 +64,18 @@ function secondsPerEpoch(plan: Plan, axes: Axes): number {
   );
   const phasors = new Float32Array(job.layout.byteLength / Float32Array.BYTES_PER_ELEMENT);
   const run = () => phasesOfEpoch(job, samples, 0, phasors, 'a sample');
-  for (let i = 0; i < 3; i++) run();
-  const repeats = Math.max(1, Math.min(50, Math.floor(wantedS / Math.max(seconds(run), 1e-4))));
-  const all = seconds(() => {
-    for (let i = 0; i < repeats; i++) run();
-  });
-  return (all / repeats) * (axes.sites.length / siteCount);
+  return (fastest(() => seconds(run)) * axes.sites.length) / siteCount;
+}
+
+/** The least of what some goes at a task cost: the rest is the compiler and other programs. */
+function fastest(cost: () => number): number {
+  const start = performance.now();
+  let least = Infinity;
+  for (let go = 0; go < mostGoes; go++) {
+    least = Math.min(least, cost());
+    if (go >= fewestGoes && performance.now() - start > 1000 * wantedS) break;
+  }
+  return least;
 }
 
 /** Unit phasors of no particular phase: cost does not depend on them. */
