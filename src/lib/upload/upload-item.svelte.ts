@@ -66,8 +66,8 @@ export class UploadItem {
   }
 
   leaveOut(kind: SidecarKind): void {
-    const { [kind]: _left, ...others } = this.sidecars;
-    this.sidecars = others;
+    const others = Object.entries(this.sidecars).filter(([other]) => other !== kind);
+    this.sidecars = Object.fromEntries(others);
   }
 
   async inspect(): Promise<void> {
