@@ -2,9 +2,10 @@ import type { ServerInit } from '@sveltejs/kit';
 import { forgetExpiredSessions } from '../accounts/sessions';
 import { config } from '../config';
 import { log } from '../log';
+import { cleanUploads } from '../uploads';
 
 /** Runs once before the first request. */
 export const init: ServerInit = async () => {
-  await forgetExpiredSessions();
+  await Promise.all([forgetExpiredSessions(), cleanUploads()]);
   log.info({ mode: config.mode, origin: config.origin }, 'ready');
 };
