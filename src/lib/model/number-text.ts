@@ -1,6 +1,6 @@
-/** The shortest text that reads back as exactly this number. */
+/** The shortest text that reads back as exactly this number, with a true minus. */
 export function numberText(value: number): string {
-  return String(value === 0 ? 0 : value);
+  return String(value === 0 ? 0 : value).replaceAll('-', '−');
 }
 
 const decimal = /^[+-]?(\d+\.?\d*|\.\d+)(e[+-]?\d+)?$/i;
@@ -11,7 +11,7 @@ const grouped = /^\d{1,3}(,\d{3})+$/;
  * A decimal comma is not guessed at: "0,2" is NaN, so that 0,200 is never taken for 200.
  */
 export function readNumber(text: string): number {
-  const clean = text.trim().replace('−', '-');
+  const clean = text.trim().replaceAll('−', '-');
   return decimal.test(clean) ? Number(clean) : Number.NaN;
 }
 

@@ -1,4 +1,12 @@
-import { consequencesOf, planEpochs, PlanError, type Consequences, type Plan } from '$engine';
+import {
+  consequencesOf,
+  planEpochs,
+  PlanError,
+  type Consequences,
+  type LossReason,
+  type LostEpoch,
+  type Plan,
+} from '$engine';
 import type { PlanIssue } from './plan-issues';
 import type { StudyRecording } from './study-recording';
 
@@ -40,16 +48,34 @@ function ruleIssues(plan: Plan, recordings: readonly StudyRecording[]): PlanIssu
   return issues;
 }
 
+/** What would bring most of the lost epochs back. */
+function remedy(lost: readonly LostEpoch[]): string {
+  const of = (reason: LossReason) => lost.filter((epoch) => epoch.reason === reason).length;
+  const [[reason, count]] = Object.entries(remedies)
+    .map(([key, words]) => [words, of(key as LossReason)] as const)
+    .sort(([, x], [, y]) => y - x);
+  return count > 0 ? reason : 'choose more events, or space them closer';
+}
+
+const remedies: Record<LossReason, string> = {
+  'guard-leaves-recording':
+    'shorten the window, raise the lowest frequency or lower its cycles, which shortens the guard',
+  'crosses-gap': 'shorten the window, so that fewer epochs cross a gap of the recording',
+  'above-limit': 'raise the limit in µV, or leave the sites out that break it',
+  flat: 'lower the limit for flat, or leave the flat sites out',
+  'by-hand': 'take some marks back',
+};
+
 /** Without two epochs of each condition there is nothing to compare. */
 function countIssues({ epochs, lost }: Consequences): PlanIssue[] {
   return (['a', 'b'] as const)
     .filter((condition) => epochs[condition] < 2)
     .map((condition) => {
-      const gone = lost.filter((epoch) => epoch.condition === condition).length;
-      const found = gone > 0 ? `; ${gone} more would be left out` : '';
+      const gone = lost.filter((epoch) => epoch.condition === condition);
+      const count = gone.length > 0 ? `; ${gone.length} are left out` : '';
       return {
         field: `${condition}.rules`,
-        message: `Needs at least 2 epochs, has ${epochs[condition]}${found}: add events, or shorten the window.`,
+        message: `Needs at least 2 epochs, has ${epochs[condition]}${count}: ${remedy(gone)}.`,
       };
     });
 }

@@ -89,7 +89,7 @@ export function newDraft(question: string, seed: string): PlanDraft {
     a: { name: '', rules: [] },
     b: { name: '', rules: [] },
     epoch: {
-      fromS: '-0.2',
+      fromS: '−0.2',
       toS: '0.8',
       detrend: 'mean',
       reference: 'recorded',

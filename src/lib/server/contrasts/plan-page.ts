@@ -15,7 +15,8 @@ export async function planPage(db: Db, member: Member, contrast: ContrastFacts, 
   return {
     body: plain(body),
     participant: body.state === 'locked' ? body.plan.participant : body.draft.participant,
-    question: body.state === 'locked' ? body.plan.question : body.draft.question,
+    // A draft's question is in its form.
+    question: body.state === 'locked' ? body.plan.question : undefined,
     previous: previous?.state === 'locked' ? previous.plan : null,
     previousVersion: before?.version ?? null,
     afterFirstLook,

@@ -48,6 +48,7 @@ export class PlanEditor {
   readonly editable: boolean;
   #previous: Plan | null = null;
   #machine: Machine | null = null;
+  #last: Consequences | null = null;
   readonly #history: History;
 
   readonly names = $derived(recordingNames(this.recordings));
@@ -70,6 +71,11 @@ export class PlanEditor {
     this.countable ? checkPlan(this.countable, this.recordings, this.#screened ?? undefined) : null,
   );
   readonly consequences = $derived<Consequences | null>(this.#check?.consequences ?? null);
+  /** The last numbers that could be counted: the page keeps its shape while a field is retyped. */
+  readonly lastConsequences = $derived.by(() => {
+    if (this.consequences) this.#last = this.consequences;
+    return this.#last;
+  });
   readonly issues = $derived<PlanIssue[]>([...this.#parsed.issues, ...(this.#check?.issues ?? [])]);
   readonly sites = $derived<SiteChoice[]>(siteChoices(usedRecordings(this.draft, this.recordings)));
   readonly changes = $derived<PlanChange[]>(
