@@ -46,6 +46,31 @@ describe('morlet', () => {
     });
   });
 
+  test('the gain at and beside its frequency equals the closed form of a Gaussian', () => {
+    // reference/08_signal.json, morlet_gain_f10_fwhm0.2, COMP (closed form).
+    const rate = 1000;
+    const cycles = (2 * Math.PI * 10 * 0.2) / (2 * Math.sqrt(2 * Math.log(2)));
+    const { halfLength, re, im } = morletKernel(10, cycles, rate);
+    const gainAt = (hz: number) => {
+      let [x, y] = [0, 0];
+      for (let m = -halfLength; m <= halfLength; m++) {
+        const angle = (-2 * Math.PI * hz * m) / rate;
+        const [c, d] = [Math.cos(angle), Math.sin(angle)];
+        x += re[m + halfLength] * c - im[m + halfLength] * d;
+        y += re[m + halfLength] * d + im[m + halfLength] * c;
+      }
+      return Math.hypot(x, y) / rate;
+    };
+    // Ours ends at 4 sd, where the envelope is exp(-8); what lies beyond is below 6.4e-5 of the area.
+    const tolerance = 6.4e-5 * 0.2129;
+    [
+      [10, 0.21289340388624525],
+      [11, 0.18463913452677272],
+      [12, 0.1204504441172224],
+      [14, 0.021814587495],
+    ].forEach(([hz, gain]) => expect(Math.abs(gainAt(hz) - gain)).toBeLessThan(tolerance));
+  });
+
   test('the kernel reaches four standard deviations, rounded up to a sample', () => {
     expect(morletKernel(10, 5, 160).halfLength).toBe(Math.ceil((4 * 5 * 160) / (2 * Math.PI * 10)));
   });

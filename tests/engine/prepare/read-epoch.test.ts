@@ -198,8 +198,13 @@ describe('screenEpochs', () => {
     ]);
   });
 
+  test('a flat site without a limit for flat epochs is named before its phases are asked for', async () => {
+    await expect(screened(limits(200, null))).rejects.toThrow('C3 is flat in the epoch at 5 s');
+  });
+
   test('a value on the limit stays', async () => {
-    expect(await screened(limits(300, null))).toEqual([]);
+    const lost = await screened(limits(300, 0.5));
+    expect(lost.map((epoch) => epoch.reason)).toEqual(['flat']);
   });
 
   test('without limits nothing is left out', async () => {

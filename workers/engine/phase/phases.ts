@@ -1,5 +1,6 @@
 import type { Plan } from '../plan';
 import { windowSamples } from '../prepare/grid';
+import { flatError } from '../prepare/signal';
 import type { Axes } from '../types';
 import { guardSamples } from './guard';
 import { phaseLayout, type PhaseLayout } from './layout';
@@ -89,11 +90,7 @@ function scaleInto(out: Float64Array, signal: Float64Array, site: string, where:
     }
     if (size > most) most = size;
   }
-  if (most === 0) {
-    throw new RangeError(
-      `${site} is flat in ${where}, so it has no phase. Leave the site out, or set a limit for flat epochs.`,
-    );
-  }
+  if (most === 0) throw flatError(site, where);
   for (let i = 0; i < signal.length; i++) out[i] = signal[i] / most;
 }
 

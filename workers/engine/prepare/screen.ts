@@ -1,11 +1,13 @@
 import type { Plan } from '../plan';
 import type { Axes, Epoch, LostEpoch } from '../types';
 import { epochReader, type RecordingSource } from './read-epoch';
-import { peakToPeak } from './signal';
+import { flatError, isConstant, peakToPeak } from './signal';
 
 /**
  * Reads the samples of `epochs` and returns those that break a limit of the plan inside the window
  * without its guard, with the site that breaks it most. Reads nothing when there is no limit.
+ * @throws RangeError when a site is flat and the plan has no limit for that: better now than when
+ * its phases are asked for.
  */
 export async function screenEpochs(
   plan: Plan,
@@ -19,6 +21,7 @@ export async function screenEpochs(
   const lost: LostEpoch[] = [];
   for (const epoch of epochs) {
     const samples = await reader.read(epoch);
+    if (flatBelowUv === null) refuseFlat(plan.sites, samples, reader.describe(epoch));
     const spans = samples.map((signal) => peakToPeak(signal, reader.guard, reader.windowCount));
     const broken = brokenLimit(spans, aboveUv, flatBelowUv);
     if (!broken) continue;
@@ -31,6 +34,11 @@ export async function screenEpochs(
     });
   }
   return lost;
+}
+
+function refuseFlat(sites: string[], samples: Float64Array[], where: string): void {
+  const flat = samples.findIndex(isConstant);
+  if (flat >= 0) throw flatError(sites[flat], where);
 }
 
 function brokenLimit(

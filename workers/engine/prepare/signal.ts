@@ -50,7 +50,14 @@ export function peakToPeak(signal: Float64Array, from: number, count: number): n
   return most - least;
 }
 
-function isConstant(signal: Float64Array): boolean {
+/** The error for a site without any signal: named before a run as well as in it. */
+export function flatError(site: string, where: string): RangeError {
+  return new RangeError(
+    `${site} is flat in ${where}, so it has no phase. Leave the site out, or set a limit for flat epochs.`,
+  );
+}
+
+export function isConstant(signal: Float64Array): boolean {
   for (let i = 1; i < signal.length; i++) if (signal[i] !== signal[0]) return false;
   return true;
 }
