@@ -1,6 +1,6 @@
 import { randomUUID } from 'node:crypto';
 import { roles, type Role } from '$lib/model/role';
-import { hashToken, newToken, startSession } from '$lib/server/accounts';
+import { hashPassword, hashToken, newToken, startSession } from '$lib/server/accounts';
 import type { Member } from '$lib/server/access';
 import { createContrast, getPlanBody, lockPlan, saveDraft } from '$lib/server/contrasts';
 import { db } from '$lib/server/database';
@@ -39,6 +39,8 @@ export interface World {
   planHash: string;
   runId: string;
   finishedRunId: string;
+  /** A map of the finished run. */
+  mapName: string;
   invitationId: string;
   /** Ids that must never appear in an answer to another team. */
   secrets: string[];
@@ -80,7 +82,11 @@ export async function makeWorld(): Promise<World> {
   };
 }
 
+// The fixture's people have no password that could be compared with one.
+const passwordHash = await hashPassword(randomUUID());
+
 async function actorOf(personId: string): Promise<Actor> {
+  await db.updateTable('person').set({ passwordHash }).where('id', '=', personId).execute();
   const cookies = new CookieJar();
   await startSession(cookies, personId);
   return { personId, cookies };
@@ -112,6 +118,9 @@ async function makeData(lead: Member) {
     reason: '',
   });
   if (plan.state !== 'locked') throw new Error(`the plan was not locked: ${JSON.stringify(plan)}`);
+  const finishedRunId = await makeRun(lead, locked.contrastId);
+  const mapName = await makeMap(lead, finishedRunId);
+  await finish(finishedRunId);
   return {
     studyId,
     participantId,
@@ -120,8 +129,9 @@ async function makeData(lead: Member) {
     draftRevision: draft.revision,
     contrastId: locked.contrastId,
     planHash: plan.hash,
-    runId: await makeRun(lead, locked.contrastId, 'running'),
-    finishedRunId: await makeRun(lead, locked.contrastId, 'finished'),
+    runId: await makeRun(lead, locked.contrastId),
+    finishedRunId,
+    mapName,
     invitationId: await makeInvitation(lead),
   };
 }
@@ -140,8 +150,7 @@ async function makeDraft(lead: Member, studyId: string, sha256: string) {
   return { contrastId: made.id, revision: saved.revision };
 }
 
-async function makeRun(lead: Member, contrastId: string, state: 'running' | 'finished') {
-  const finished = state === 'finished';
+export async function makeRun(starter: Member, contrastId: string): Promise<string> {
   const plan = await db
     .selectFrom('plan')
     .select('id')
@@ -150,21 +159,49 @@ async function makeRun(lead: Member, contrastId: string, state: 'running' | 'fin
   const { id } = await db
     .insertInto('run')
     .values({
-      teamId: lead.teamId,
+      teamId: starter.teamId,
       planId: plan.id,
-      state,
+      state: 'running',
       seed: 'tide-2',
       engineVersion,
       workerCount: 2,
-      progress: finished ? 1 : 0.5,
-      digest: finished ? 'd'.repeat(64) : null,
+      digest: null,
       failure: null,
-      startedBy: lead.personId,
-      finishedAt: finished ? new Date() : null,
+      startedBy: starter.personId,
+      finishedAt: null,
     })
     .returning('id')
     .executeTakeFirstOrThrow();
   return id;
+}
+
+/** Finished as far as rows go: after this nothing of the run can change. */
+async function finish(runId: string): Promise<void> {
+  await db
+    .updateTable('run')
+    .set({ state: 'finished', progress: 1, digest: 'd'.repeat(64), finishedAt: new Date() })
+    .where('id', '=', runId)
+    .execute();
+}
+
+async function makeMap(lead: Member, runId: string): Promise<string> {
+  const name = 'z';
+  const storageKey = `maps/${runId}.npy`;
+  const { sizeBytes, sha256 } = await storage.put(storageKey, new Uint8Array(256));
+  await db
+    .insertInto('storedMap')
+    .values({
+      teamId: lead.teamId,
+      runId,
+      name,
+      storageKey,
+      sha256,
+      sizeBytes,
+      dtype: '<f4',
+      shape: [1],
+    })
+    .execute();
+  return name;
 }
 
 async function makeInvitation(lead: Member): Promise<string> {
