@@ -42,44 +42,44 @@ export async function stageMap(
   bytes: Readable,
   check: (header: NpyHeader) => void,
 ): Promise<void> {
-  // A sender that breaks off before anybody reads must not end the process; the reader hears it.
+  // A request that breaks off before it is read is reported by reading it.
   bytes.on('error', () => undefined);
-  const checked = Readable.from(checkedNpy(name, bytes, check), { objectMode: false });
-  await storage.put(stagedKey(runId, name), checked);
+  await storage.put(stagedKey(runId, name), Readable.from(guarded(name, bytes, check)));
 }
 
-/** Passes bytes on while they are those of an NPY file whose header holds. Pulled, never pushed. */
-async function* checkedNpy(
+/**
+ * Passes bytes on while they are those of an NPY file whose header holds. Pulled, not pushed: a
+ * refusal meets the reader, and is never an error of a stream that nobody listens to yet.
+ */
+async function* guarded(
   name: string,
   bytes: Readable,
   check: (header: NpyHeader) => void,
 ): AsyncGenerator<Buffer> {
-  let head: Buffer | null = Buffer.alloc(0);
-  let due = Infinity;
+  const refuse = (what: string) => new ResultRefused('map-shape', `Map ${name} ${what}.`);
+  let head: Buffer = Buffer.alloc(0);
+  let due: number | null = null;
   let passed = 0;
-  const opened = (start: Buffer): Buffer => {
+  const dueOf = (start: Buffer): number => {
     const header = headerOf(name, start);
     check(header);
-    due = header.dataOffset + header.dataLength;
-    head = null;
-    return start;
+    return header.dataOffset + header.dataLength;
   };
-  const counted = (chunk: Buffer): Buffer => {
-    passed += chunk.length;
-    if (passed > due) {
-      throw new ResultRefused('map-shape', `Map ${name} is longer than the ${due} bytes due.`);
-    }
-    return chunk;
-  };
-  for await (const chunk of bytes as AsyncIterable<Buffer>) {
-    if (head === null) yield counted(chunk);
-    else if (head.length + chunk.length < npyHeaderLimit) head = Buffer.concat([head, chunk]);
-    else yield counted(opened(Buffer.concat([head, chunk])));
+  for await (const part of bytes as AsyncIterable<Buffer>) {
+    head = due === null ? Buffer.concat([head, part]) : part;
+    if (due === null && head.length < npyHeaderLimit) continue;
+    due ??= dueOf(head);
+    passed += head.length;
+    if (passed > due) throw refuse(`is longer than the ${due} bytes due`);
+    yield head;
   }
-  if (head !== null) yield counted(opened(head));
-  if (passed < due) {
-    throw new ResultRefused('map-shape', `Map ${name} ends after ${passed} of ${due} bytes.`);
+  if (due === null) {
+    due = dueOf(head);
+    passed = head.length;
+    if (passed > due) throw refuse(`is longer than the ${due} bytes due`);
+    yield head;
   }
+  if (passed < due) throw refuse(`ends after ${passed} of ${due} bytes`);
 }
 
 function headerOf(name: string, bytes: Uint8Array): NpyHeader {

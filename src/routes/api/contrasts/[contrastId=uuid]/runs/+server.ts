@@ -1,6 +1,7 @@
 import { json } from '@sveltejs/kit';
 import { newRunSchema } from '$lib/model/run';
 import { allow } from '$lib/server/access';
+import { getContrast } from '$lib/server/contrasts';
 import { db } from '$lib/server/database';
 import { readJson } from '$lib/server/read-json';
 import { createRun, listRuns } from '$lib/server/runs';
@@ -8,7 +9,8 @@ import type { RequestHandler } from './$types';
 
 export const GET: RequestHandler = async (event) => {
   const member = allow(event, 'contrast.read');
-  return json({ runs: await listRuns(db, member.teamId, event.params.contrastId) });
+  const { id } = await getContrast(db, member, event.params.contrastId);
+  return json({ runs: await listRuns(db, member.teamId, id) });
 };
 
 export const POST: RequestHandler = async (event) => {
