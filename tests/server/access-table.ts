@@ -2,7 +2,7 @@ import { engineVersion } from '$engine';
 import type { Action, Member } from '$lib/server/access';
 import { db } from '$lib/server/database';
 import { answerTus } from '$lib/server/uploads';
-import { makeRun, type World } from './access/world';
+import { makeFinishedRun, makeRun, type World } from './access/world';
 import { validDraft } from './contrasts/valid-draft';
 
 /** What of a request is particular to a handler. */
@@ -138,6 +138,22 @@ export const accessTable: Record<string, Record<string, Expectation | Expectatio
     })),
   },
 
+  '(app)/studies/[studyId=uuid]/recordings/+page.server.ts': {
+    load: guarded('recording.read', study),
+    'actions.delete': guarded('recording.write', (world) => ({
+      ...study(world),
+      form: { id: world.recording.id },
+    })),
+    'actions.attach': guarded('recording.write', (world) => ({
+      ...study(world),
+      body: sidecarForm(world),
+    })),
+    'actions.participants': guarded('study.write', (world) => ({
+      ...study(world),
+      form: { code: 'P77' },
+    })),
+  },
+
   '(app)/contrasts/[contrastId=uuid]/+layout.server.ts': { load: guarded('contrast.read', locked) },
   '(app)/contrasts/[contrastId=uuid]/+page.server.ts': { load: guarded('contrast.read', locked) },
   '(app)/contrasts/[contrastId=uuid]/define/+page.server.ts': {
@@ -145,6 +161,10 @@ export const accessTable: Record<string, Record<string, Expectation | Expectatio
     'actions.newVersion': guarded('contrast.write', (world) => ({
       ...locked(world),
       form: { fromVersion: '1' },
+    })),
+    'actions.lock': guarded('plan.lock', (world) => ({
+      ...draft(world),
+      form: { version: '1', revision: '1' },
     })),
     'actions.discard': guarded('contrast.write', draft),
     'actions.rename': guarded('contrast.write', (world) => ({
@@ -155,11 +175,17 @@ export const accessTable: Record<string, Record<string, Expectation | Expectatio
   '(app)/contrasts/[contrastId=uuid]/run/+page.server.ts': {
     load: guarded('contrast.read', locked),
   },
+  '(app)/contrasts/[contrastId=uuid]/result/+page.server.ts': {
+    load: guarded('result.read', async (world) => {
+      await makeFinishedRun(world);
+      return locked(world);
+    }),
+  },
 
   'api/contrasts/[contrastId=uuid]/draft/+server.ts': {
     PUT: guarded('contrast.write', (world) => ({
       ...draft(world),
-      json: { version: 1, basedOn: world.draftRevision, draft: validDraft(world.recording.sha256) },
+      json: { version: 1, basedOn: 1, draft: validDraft(world.draftedSha256) },
     })),
   },
   'api/contrasts/[contrastId=uuid]/recordings/+server.ts': {
@@ -190,14 +216,16 @@ export const accessTable: Record<string, Record<string, Expectation | Expectatio
     })),
   },
   'api/runs/[runId=uuid]/maps/[name]/+server.ts': {
-    GET: guarded('result.read', (world) => ({
-      params: { runId: world.finishedRunId, name: world.mapName },
+    GET: guarded('result.read', async (world) => ({
+      params: { runId: await makeFinishedRun(world), name: 'z' },
     })),
     PUT: guarded('run.write', async (world, asker) => {
       const { params } = await ownRun(world, asker);
       return { params: { ...params, name: 'z' }, body: new Uint8Array(256) };
     }),
   },
+  'api/runs/[runId=uuid]/edges/+server.ts': { GET: guarded('result.read', finishedRun) },
+  'api/runs/[runId=uuid]/pairs/+server.ts': { GET: guarded('result.read', finishedRun) },
   'api/uploads/[...path]/+server.ts': {
     POST: [
       guarded('recording.write', (world) => ({
@@ -234,6 +262,17 @@ function locked({ contrastId }: World): RequestParts {
 
 function recording(world: World): RequestParts {
   return { params: { recordingId: world.recording.id } };
+}
+
+function sidecarForm({ recording: { id } }: World): FormData {
+  const form = new FormData();
+  form.set('id', id);
+  form.set('file', new File(['onset\tduration\ttrial_type\n1\t0\ttap\n'], 'rest_events.tsv'));
+  return form;
+}
+
+async function finishedRun(world: World): Promise<RequestParts> {
+  return { params: { runId: await makeFinishedRun(world) } };
 }
 
 /** A run is its starter's to report on. */

@@ -18,6 +18,9 @@ const listed = Object.entries(accessTable).flatMap(([file, rows]) =>
   Object.keys(rows).map((handler) => `${file} ${handler}`),
 );
 
+/** Handlers that change nothing leave the world fit for the next one. */
+const reading = new Set(['load', 'GET', 'HEAD', 'OPTIONS']);
+
 afterAll(() => db.destroy());
 
 describe('the table of expectations', () => {
@@ -89,7 +92,7 @@ function proveGuard(
 
   const right = roles.filter((role) => may(role, row.action));
   it.each(right)('lets in a %s, who is not refused', async (role) => {
-    world = await makeWorld();
+    if (!reading.has(handler)) world = await makeWorld();
     const answer = await ask(world.actors[role].cookies, world.members[role]);
     expect([401, 403, 404, 500]).not.toContain(answer.status);
     expect(answer.location ?? '').not.toContain('/sign-in');

@@ -1,13 +1,22 @@
 import { randomUUID } from 'node:crypto';
+import { mkdtemp, rm, writeFile } from 'node:fs/promises';
+import { tmpdir } from 'node:os';
+import path from 'node:path';
+import { buffer } from 'node:stream/consumers';
+import { bytesOf, engineVersion } from '$engine';
 import { roles, type Role } from '$lib/model/role';
-import { hashPassword, hashToken, newToken, startSession } from '$lib/server/accounts';
 import type { Member } from '$lib/server/access';
-import { createContrast, getPlanBody, lockPlan, saveDraft } from '$lib/server/contrasts';
+import { hashPassword, hashToken, newToken, startSession } from '$lib/server/accounts';
+import { createContrast, getPlanBody, saveDraft } from '$lib/server/contrasts';
 import { db } from '$lib/server/database';
+import { ingestRecording, recordingFacts } from '$lib/server/recordings';
+import { createRun, storeResult } from '$lib/server/runs';
 import { storage } from '$lib/server/storage';
-import { engineVersion } from '$engine';
+import { runHeadless, type HeadlessResult } from '$workers/headless';
+import { smallPlan, smallRecording } from '../../engine/run/small-run';
 import { makeColleague, makeMember, makeRecording, makeStudy } from '../contrasts/fixture';
 import { tappingEvents, validDraft } from '../contrasts/valid-draft';
+import { lockedContrast } from '../runs/laboratory';
 import { CookieJar } from './cookie-jar';
 
 /** Somebody with a session; a person without a team has no member. */
@@ -30,17 +39,15 @@ export interface World {
   teamId: string;
   studyId: string;
   participantId: string;
-  recording: { id: string; sha256: string; name: string };
-  /** A contrast with an unlocked, valid plan. */
+  recording: { id: string; sha256: string; participantId: string; storageKey: string };
+  /** A contrast with an unlocked plan, saved once, that is ready to be locked. */
   draftContrastId: string;
-  draftRevision: number;
-  /** A contrast with a locked plan, a run under way and a finished one. */
+  /** The recording that the draft names. */
+  draftedSha256: string;
+  /** A contrast with a locked plan and a run under way. */
   contrastId: string;
   planHash: string;
   runId: string;
-  finishedRunId: string;
-  /** A map of the finished run. */
-  mapName: string;
   invitationId: string;
   /** Ids that must never appear in an answer to another team. */
   secrets: string[];
@@ -73,9 +80,7 @@ export async function makeWorld(): Promise<World> {
       data.recording.sha256,
       data.draftContrastId,
       data.contrastId,
-      data.planHash,
       data.runId,
-      data.finishedRunId,
       data.invitationId,
       ...Object.values(members).map((member) => member.personId),
     ],
@@ -103,37 +108,41 @@ async function makePerson(): Promise<string> {
 
 async function makeData(lead: Member) {
   const studyId = await makeStudy(db, lead);
-  const recording = await makeRecording(db, lead, studyId, { events: tappingEvents });
-  await storage.put(`recordings/${recording.sha256}`, new Uint8Array(1000));
-  const { participantId } = await db
-    .selectFrom('recording')
-    .select('participantId')
-    .where('id', '=', recording.id)
-    .executeTakeFirstOrThrow();
-  const draft = await makeDraft(lead, studyId, recording.sha256);
-  const locked = await makeDraft(lead, studyId, recording.sha256);
-  const plan = await lockPlan(db, lead, locked.contrastId, {
-    version: 1,
-    revision: locked.revision,
-    reason: '',
-  });
-  if (plan.state !== 'locked') throw new Error(`the plan was not locked: ${JSON.stringify(plan)}`);
-  const finishedRunId = await makeRun(lead, locked.contrastId);
-  const mapName = await makeMap(lead, finishedRunId);
-  await finish(finishedRunId);
+  const recording = await ingest(lead, studyId);
+  const { contrastId, hash } = await lockedContrast(db, lead, studyId, smallPlan(recording.sha256));
+  const drafted = await makeRecording(db, lead, studyId, { events: tappingEvents });
   return {
     studyId,
-    participantId,
     recording,
-    draftContrastId: draft.contrastId,
-    draftRevision: draft.revision,
-    contrastId: locked.contrastId,
-    planHash: plan.hash,
-    runId: await makeRun(lead, locked.contrastId),
-    finishedRunId,
-    mapName,
+    participantId: recording.participantId,
+    draftedSha256: drafted.sha256,
+    draftContrastId: await makeDraft(lead, studyId, drafted.sha256),
+    contrastId,
+    planHash: hash,
+    runId: await makeRun(lead, contrastId),
     invitationId: await makeInvitation(lead),
   };
+}
+
+/** A small recording as an upload would bring it in. */
+async function ingest(lead: Member, studyId: string) {
+  const folder = await mkdtemp(path.join(tmpdir(), 'nullwright-world-'));
+  const file = path.join(folder, 'rest.edf');
+  await writeFile(file, smallRecording());
+  const ingested = await ingestRecording(db, storage, lead, {
+    studyId,
+    participantCode: 'P01',
+    name: 'rest.edf',
+    path: file,
+    keepIdentification: false,
+  });
+  await rm(folder, { recursive: true });
+  if (ingested.kind !== 'stored') throw new Error(`the recording was not stored: ${ingested.kind}`);
+  return db
+    .selectFrom('recording')
+    .select(['id', 'sha256', 'participantId', 'storageKey'])
+    .where('id', '=', ingested.id)
+    .executeTakeFirstOrThrow();
 }
 
 async function makeDraft(lead: Member, studyId: string, sha256: string) {
@@ -147,61 +156,38 @@ async function makeDraft(lead: Member, studyId: string, sha256: string) {
     draft: validDraft(sha256),
   });
   if (saved.state !== 'saved') throw new Error(`the draft was not saved: ${saved.state}`);
-  return { contrastId: made.id, revision: saved.revision };
+  return made.id;
 }
 
+/** A run under way; it is its starter's to report on. */
 export async function makeRun(starter: Member, contrastId: string): Promise<string> {
-  const plan = await db
+  const { hash } = await db
     .selectFrom('plan')
-    .select('id')
+    .select('hash')
     .where('contrastId', '=', contrastId)
     .executeTakeFirstOrThrow();
-  const { id } = await db
-    .insertInto('run')
-    .values({
-      teamId: starter.teamId,
-      planId: plan.id,
-      state: 'running',
-      seed: 'tide-2',
-      engineVersion,
-      workerCount: 2,
-      digest: null,
-      failure: null,
-      startedBy: starter.personId,
-      finishedAt: null,
-    })
-    .returning('id')
-    .executeTakeFirstOrThrow();
+  const asked = { planHash: hash ?? '', engineVersion, workerCount: 1 };
+  return (await createRun(db, starter, contrastId, asked)).id;
+}
+
+let computed: Promise<HeadlessResult> | null = null;
+
+/** Every world holds the same recording and plan: what comes out is computed once. */
+async function compute({ recording, teamId }: World): Promise<HeadlessResult> {
+  const [facts] = await recordingFacts(db, teamId, { ids: [recording.id] });
+  const bytes = new Uint8Array(await buffer(storage.stream(recording.storageKey)));
+  return runHeadless(smallPlan(recording.sha256), [{ facts: facts!, source: bytesOf(bytes) }]);
+}
+
+/** A run whose result the server checked and stored. */
+export async function makeFinishedRun(world: World): Promise<string> {
+  computed ??= compute(world);
+  const result = await computed;
+  const { lead } = world.members;
+  const id = await makeRun(lead, world.contrastId);
+  await storeResult(db, storage, lead, id, result, result.summary);
+  world.secrets.push(id);
   return id;
-}
-
-/** Finished as far as rows go: after this nothing of the run can change. */
-async function finish(runId: string): Promise<void> {
-  await db
-    .updateTable('run')
-    .set({ state: 'finished', progress: 1, digest: 'd'.repeat(64), finishedAt: new Date() })
-    .where('id', '=', runId)
-    .execute();
-}
-
-async function makeMap(lead: Member, runId: string): Promise<string> {
-  const name = 'z';
-  const storageKey = `maps/${runId}.npy`;
-  const { sizeBytes, sha256 } = await storage.put(storageKey, new Uint8Array(256));
-  await db
-    .insertInto('storedMap')
-    .values({
-      teamId: lead.teamId,
-      runId,
-      name,
-      storageKey,
-      sha256,
-      sizeBytes,
-      dtype: '<f4',
-      shape: [1],
-    })
-    .execute();
-  return name;
 }
 
 async function makeInvitation(lead: Member): Promise<string> {

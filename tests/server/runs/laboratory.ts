@@ -57,7 +57,8 @@ export async function openRunLab(db: Db): Promise<RunLab> {
   };
 }
 
-async function lockedContrast(db: Db, member: Member, studyId: string, plan: Plan) {
+/** A contrast whose first plan is locked. */
+export async function lockedContrast(db: Db, member: Member, studyId: string, plan: Plan) {
   const owner = { teamId: member.teamId, createdBy: member.personId };
   const contrast = await db
     .insertInto('contrast')
