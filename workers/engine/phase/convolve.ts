@@ -28,6 +28,7 @@ export function convolver(kernels: PhaseKernel[], geometry: EpochGeometry): Phas
 
   const signal = new Float64Array(2 * size);
   const spectrum = new Float64Array(2 * size);
+  const separated = new Float64Array(4 * size);
   const products = [new Float64Array(2 * folded), new Float64Array(2 * folded)] as const;
   const values = new Float64Array(2 * folded);
 
@@ -44,9 +45,9 @@ export function convolver(kernels: PhaseKernel[], geometry: EpochGeometry): Phas
         signal[at + 1] = b[i];
       }
       forward.transform(spectrum, signal);
-      separate(spectrum, signal, size);
+      separate(spectrum, separated, size);
       for (let f = 0; f < kernels.length; f++) {
-        foldProducts(signal, spectra[f], products, size, folded);
+        foldProducts(separated, spectra[f], products, size, folded);
         for (let which = 0; which < 2; which++) {
           inverse.inverseTransform(values, products[which]);
           const base = (which * kernels.length + f) * offsets.length;
@@ -93,11 +94,10 @@ function kernelSpectrum(kernel: PhaseKernel, fft: FFT, step: number): Float64Arr
 
 /**
  * From the spectrum X of a + ib, the spectra A = (X[k] + X*[-k]) / 2 and
- * B = (X[k] - X*[-k]) / 2i, for k <= n/2, as [A re, A im, B re, B im] in `out`.
+ * B = (X[k] - X*[-k]) / 2i as [A re, A im, B re, B im], bin after bin.
  */
 function separate(spectrum: Float64Array, out: Float64Array, size: number): void {
-  // Only half the bins are kept: a real signal's other half is their conjugate.
-  for (let k = 0; 2 * k < size; k++) {
+  for (let k = 0; k < size; k++) {
     const back = 2 * ((size - k) & (size - 1));
     const re = spectrum[2 * k];
     const im = spectrum[2 * k + 1];
@@ -108,9 +108,6 @@ function separate(spectrum: Float64Array, out: Float64Array, size: number): void
     out[4 * k + 2] = 0.5 * (im + backIm);
     out[4 * k + 3] = 0.5 * (backRe - re);
   }
-  // Bin n/2 of both signals is real; it takes the place of the imaginary parts of bin 0, which is too.
-  out[1] = spectrum[size];
-  out[3] = spectrum[size + 1];
 }
 
 /** Products of both separated spectra with a real kernel spectrum, folded modulo `folded`. */
@@ -122,32 +119,22 @@ function foldProducts(
   folded: number,
 ): void {
   const [a, b] = products;
-  const half = size / 2;
-  const mask = folded - 1;
-  a.fill(0);
-  b.fill(0);
-  a[0] = separated[0] * kernel[0];
-  b[0] = separated[2] * kernel[0];
-  const middle = 2 * (half & mask);
-  a[middle] += separated[1] * kernel[half];
-  b[middle] += separated[3] * kernel[half];
-  for (let k = 1; k < half; k++) {
-    const positive = kernel[k];
-    const negative = kernel[size - k];
-    const aRe = separated[4 * k];
-    const aIm = separated[4 * k + 1];
-    const bRe = separated[4 * k + 2];
-    const bIm = separated[4 * k + 3];
-    const up = 2 * (k & mask);
-    const down = 2 * ((size - k) & mask);
-    a[up] += aRe * positive;
-    a[up + 1] += aIm * positive;
-    b[up] += bRe * positive;
-    b[up + 1] += bIm * positive;
-    a[down] += aRe * negative;
-    a[down + 1] -= aIm * negative;
-    b[down] += bRe * negative;
-    b[down + 1] -= bIm * negative;
+  for (let r = 0; r < folded; r++) {
+    let aRe = 0;
+    let aIm = 0;
+    let bRe = 0;
+    let bIm = 0;
+    for (let k = r; k < size; k += folded) {
+      const gain = kernel[k];
+      aRe += separated[4 * k] * gain;
+      aIm += separated[4 * k + 1] * gain;
+      bRe += separated[4 * k + 2] * gain;
+      bIm += separated[4 * k + 3] * gain;
+    }
+    a[2 * r] = aRe;
+    a[2 * r + 1] = aIm;
+    b[2 * r] = bRe;
+    b[2 * r + 1] = bIm;
   }
 }
 
