@@ -2,7 +2,7 @@ import type { ByteSource } from '../engine/read';
 
 /**
  * A file behind an address that honours Range requests. Each read is one request.
- * @throws Error saying the status, when the server does not answer with the range asked for.
+ * @throws Error for people, when the server cannot be reached or does not answer with the range.
  */
 export function bytesOfUrl(url: string, size: number): ByteSource {
   return {
@@ -13,7 +13,9 @@ export function bytesOfUrl(url: string, size: number): ByteSource {
       }
       if (length === 0) return new Uint8Array(0);
       const headers = { Range: `bytes=${offset}-${offset + length - 1}` };
-      const response = await fetch(url, { headers });
+      const response = await fetch(url, { headers }).catch(() => {
+        throw new Error('The server could not be reached.');
+      });
       const isWhole = response.status === 200 && offset === 0 && length === size;
       if (response.status !== 206 && !isWhole) {
         throw new Error(

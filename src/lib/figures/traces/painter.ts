@@ -1,5 +1,6 @@
 import { fillExtents, needsSamples, summarise, type Columns, type Extents } from './extents';
 import { firstEventAt, gapsIn, timeTicks, type TraceEvent } from './marks';
+import { unreadIn } from './unread';
 import { drawRow, packColour, type Picture } from './raster';
 import type { Span } from './trace-view.svelte';
 import type { TraceData } from './trace-data';
@@ -55,9 +56,10 @@ export class TracePainter {
     // On a fixed grid, so that the same sample falls into the same column from frame to frame.
     const startS = Math.round(scene.span.startS / secondsPerColumn) * secondsPerColumn;
     const columns = { startS, secondsPerColumn, count: width };
-    this.drawUnder(scene, columns);
+    const isFine = needsSamples(scene.data, columns);
+    this.drawUnder(scene, columns, unreadIn(scene.data, columns, isFine));
     const reachesUv = this.drawTraces(scene, columns, scale);
-    return { columns, needsSamples: needsSamples(scene.data, columns), reachesUv };
+    return { columns, needsSamples: isFine, reachesUv };
   }
 
   private fit({ widthPx, heightPx }: Scene): number {
@@ -82,7 +84,7 @@ export class TracePainter {
     const { data, rows } = scene;
     const style = getComputedStyle(this.overCanvas);
     const ink = packColour(style.getPropertyValue('--ink'));
-    const mist = packColour(style.getPropertyValue('--mist'));
+    const mist = packColour(style.getPropertyValue('--mist-2'));
     const rowHeight = this.picture.height / Math.max(1, rows.length);
     const reachesUv: number[] = [];
     this.picture.pixels.fill(0);
@@ -105,7 +107,7 @@ export class TracePainter {
     return reachesUv;
   }
 
-  private drawUnder(scene: Scene, columns: Columns): void {
+  private drawUnder(scene: Scene, columns: Columns, unread: [number, number][]): void {
     const { under } = this;
     const { widthPx, heightPx } = scene;
     const style = getComputedStyle(this.underCanvas);
@@ -115,33 +117,35 @@ export class TracePainter {
     under.setTransform(devicePixelRatio, 0, 0, devicePixelRatio, 0, 0);
     under.clearRect(0, 0, widthPx, heightPx + stripHeight + axisHeight);
     under.font = FONT;
-    this.drawGaps(scene, columns, xOf, colour);
     if (scene.chosenRow >= 0) {
       const rowHeight = heightPx / scene.rows.length;
       under.fillStyle = colour('wash');
       under.fillRect(0, stripHeight + scene.chosenRow * rowHeight, widthPx, rowHeight);
     }
+    const gaps = gapsIn(scene.segments, columns.startS, endS);
+    this.shade(gaps, 'not recorded', colour('mist-soft'), { scene, xOf, ink: colour('ink-2') });
+    this.shade(unread, 'reading…', colour('wash'), { scene, xOf, ink: colour('ink-2') });
     this.drawAxis(scene, [columns.startS, endS], xOf, colour);
     this.drawEvents(scene, [columns.startS, endS], xOf, colour);
   }
 
-  private drawGaps(
-    scene: Scene,
-    columns: Columns,
-    xOf: (timeS: number) => number,
-    colour: (name: string) => string,
+  /** Stretches of time without traces, with the reason where there is room for it. */
+  private shade(
+    stretches: [number, number][],
+    reason: string,
+    fill: string,
+    { scene, xOf, ink }: { scene: Scene; xOf: (timeS: number) => number; ink: string },
   ): void {
     const { under } = this;
-    const endS = columns.startS + columns.count * columns.secondsPerColumn;
-    for (const [fromS, toS] of gapsIn(scene.segments, columns.startS, endS)) {
-      const x = xOf(fromS);
-      const width = Math.max(1, xOf(toS) - x);
-      under.fillStyle = colour('mist-soft');
+    for (const [fromS, toS] of stretches) {
+      const x = Math.max(0, xOf(fromS));
+      const width = Math.max(1, Math.min(scene.widthPx, xOf(toS)) - x);
+      under.fillStyle = fill;
       under.fillRect(x, stripHeight, width, scene.heightPx);
       if (width < 90) continue;
-      under.fillStyle = colour('ink-2');
+      under.fillStyle = ink;
       under.textAlign = 'center';
-      under.fillText('not recorded', x + width / 2, stripHeight + scene.heightPx / 2);
+      under.fillText(reason, x + width / 2, stripHeight + scene.heightPx / 2);
     }
   }
 

@@ -22,6 +22,8 @@ export class TraceView {
   chosen = $state(0);
   /** What is drawn: follows the target. Not reactive, it changes every frame. */
   shown: Span = { startS: 0, widthS: 10 };
+  /** For people who ask their system for less motion. */
+  isStill = false;
   private fittedWidthS = 0;
 
   constructor(
@@ -44,7 +46,7 @@ export class TraceView {
     const widthS = Math.min(this.lengthS, Math.max(SHORTEST_S, span.widthS));
     const startS = Math.min(this.endS - widthS, Math.max(this.startS, span.startS));
     this.target = { startS, widthS };
-    if (at === 'once') this.shown = this.target;
+    if (at === 'once' || this.isStill) this.shown = this.target;
   }
 
   pan(seconds: number, at: 'once' | 'ease'): void {
