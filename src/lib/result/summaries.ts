@@ -12,7 +12,7 @@ export function strongestByPair(edges: readonly ResultEdge[]): ResultEdge[] {
 }
 
 /** More curves than this are a tangle that shows nothing. */
-export const mostCurves = 200;
+export const mostCurves = 120;
 const mistCurves = 8;
 
 /** What the head shows: the claimed edges, and the strongest of those that did not survive. */

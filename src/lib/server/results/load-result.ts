@@ -34,6 +34,12 @@ export async function pairValues(
   return pairPeaks(...maps, pairCount, found.plan.body.test.tail);
 }
 
+/** The middle of all features' null standard deviations. */
+async function medianNullSd(db: Db, storage: Storage, member: Member, runId: string) {
+  const { data } = await readMap(db, storage, member, runId, 'null-sd');
+  return Float32Array.from(data).sort()[data.length >> 1] ?? null;
+}
+
 /** Everything the result page shows at first sight; slices of maps follow when chosen. */
 export async function loadResult(
   db: Db,
@@ -71,5 +77,7 @@ export async function loadResult(
     peaks,
     positions,
     firstLook,
+    // Only an empty result asks what could have been found; a whole map is read for it.
+    typicalNullSd: edges.length === 0 ? await medianNullSd(db, storage, member, runId) : null,
   };
 }

@@ -1,0 +1,3 @@
+import type { PageLoad } from './$types';
+
+export const load: PageLoad = () => ({ meta: { title: 'Methods' } });
