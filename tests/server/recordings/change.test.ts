@@ -86,7 +86,7 @@ describe('a stored recording', () => {
       message: expect.stringContaining('Cued against free'),
     });
     const detail = await recordingDetail(db, lab.member.teamId, lab.studyId, id);
-    expect(detail.facts.events.map((event) => event.label)).toEqual(['go', 'stöp']);
+    expect(detail.events.map((event) => event.label)).toEqual(['go', 'stöp']);
   });
 
   it('remembers which channels are bad', async () => {

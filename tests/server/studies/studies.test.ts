@@ -195,7 +195,7 @@ describe('a study’s contrasts', () => {
     const [done] = await studyContrasts(db, lab.member.teamId, lab.studyId);
     expect(done).toMatchObject({
       stage: 'result',
-      headline: { planVersion: 1, edgeCount: 2, smallestAdjustedP: 0.004 },
+      headline: { planVersion: 1, edgeCount: 3, smallestAdjustedP: 0.004 },
     });
   });
 });

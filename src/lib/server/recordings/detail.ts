@@ -1,7 +1,6 @@
 import { notFound } from '../access/not-found';
 import type { Db } from '../database';
 import { recordingFacts } from './facts';
-import { eventCounts } from './list';
 
 /** Everything the recording's own page shows, fields chosen by name. */
 export async function recordingDetail(
@@ -38,27 +37,32 @@ export async function recordingDetail(
     .where('recording.id', '=', recordingId)
     .executeTakeFirst();
   if (!recording) notFound('recording');
-  const [[facts], counts, channels, eventSource] = await Promise.all([
+  const [[facts], channels, eventSource] = await Promise.all([
     recordingFacts(db, teamId, { ids: [recordingId] }),
-    eventCounts(db, teamId, [recordingId]),
     channelDetails(db, teamId, recordingId),
     sourceOfEvents(db, teamId, recordingId),
   ]);
   if (!facts) notFound('recording');
-  return { ...recording, facts, channels, eventSource, eventCounts: counts.get(recordingId) ?? [] };
+  const { segments, events } = facts;
+  return { ...recording, segments, events, channels, eventSource };
 }
 
 export type RecordingDetail = Awaited<ReturnType<typeof recordingDetail>>;
 
 /** What the channel table shows beyond the facts; the same order as the facts' channels. */
-function channelDetails(db: Db, teamId: string, recordingId: string) {
-  return db
+async function channelDetails(db: Db, teamId: string, recordingId: string) {
+  const rows = await db
     .selectFrom('channel')
     .select(['label', 'site', 'type', 'unit', 'samplingRateHz', 'positionSource', 'bad'])
+    .select(['x', 'y', 'z'])
     .where('teamId', '=', teamId)
     .where('recordingId', '=', recordingId)
     .orderBy('position')
     .execute();
+  return rows.map(({ x, y, z, ...channel }) => ({
+    ...channel,
+    position: x === null || y === null || z === null ? null : { x, y, z },
+  }));
 }
 
 async function sourceOfEvents(db: Db, teamId: string, recordingId: string) {

@@ -80,7 +80,7 @@ async function channelSummary(db: Db, teamId: string, recordingIds: string[]) {
 }
 
 /** Counts by label for each recording, the most frequent label first. */
-export async function eventCounts(db: Db, teamId: string, recordingIds: string[]) {
+async function eventCounts(db: Db, teamId: string, recordingIds: string[]) {
   const rows = await db
     .selectFrom('event')
     .select(['recordingId', 'label', sql<number>`count(*)`.as('count')])

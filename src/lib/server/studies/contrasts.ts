@@ -116,7 +116,7 @@ async function headlinesOf(db: Db, teamId: string, runs: RunRow[]) {
     .selectFrom('edge')
     .select(['runId', 'correction'])
     .select([
-      sql<number>`count(distinct pair_index)`.as('edgeCount'),
+      sql<number>`count(*)`.as('edgeCount'),
       sql<number>`min(adjusted_p)`.as('smallestAdjustedP'),
     ])
     .where('teamId', '=', teamId)
