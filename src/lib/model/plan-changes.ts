@@ -1,4 +1,4 @@
-import type { Plan, Rule } from '$engine';
+import { correctionOf, measureOf, nullModelOf, phaseMethods, type Plan, type Rule } from '$engine';
 import { fieldName } from './plan-fields';
 
 /** One choice that differs between two versions of a plan, before and after in words. */
@@ -51,6 +51,21 @@ function referenceWords(reference: Plan['epoch']['reference']): string {
   return `mean of ${list(reference.sites)}`;
 }
 
+const tailWords: Record<Plan['test']['tail'], string> = {
+  'two-sided': 'two-sided',
+  'a-greater': 'more in A',
+  'b-greater': 'more in B',
+};
+
+function methodName(id: Plan['phase']['method']): string {
+  return phaseMethods.find((method) => method.id === id)?.name ?? id;
+}
+
+function correctionWords([claim, ...others]: Plan['test']['corrections']): string {
+  const first = `${correctionOf(claim).name}, which carries the claim`;
+  return [first, ...others.map((id) => correctionOf(id).name)].join('; ');
+}
+
 /** Everything a plan fixes, as [path, words, exact value]; the exact value decides on a change. */
 function choices(plan: Plan): [string, string, unknown][] {
   const byHash = new Map(plan.recordings.map((each) => [each.sha256, each.name]));
@@ -67,25 +82,25 @@ function choices(plan: Plan): [string, string, unknown][] {
     ['b.rules', rules(plan.b.rules), plan.b.rules],
     ['epoch.fromS', seconds(epoch.fromS), epoch.fromS],
     ['epoch.toS', seconds(epoch.toS), epoch.toS],
-    ['epoch.detrend', epoch.detrend, epoch.detrend],
+    ['epoch.detrend', epoch.detrend === 'line' ? 'straight line' : 'mean', epoch.detrend],
     ['epoch.reference', referenceWords(epoch.reference), epoch.reference],
     ['epoch.reject.aboveUv', limit(epoch.reject.aboveUv), epoch.reject.aboveUv],
     ['epoch.reject.flatBelowUv', limit(epoch.reject.flatBelowUv), epoch.reject.flatBelowUv],
     ['epoch.reject.byHand', `${epoch.reject.byHand.length} marked`, epoch.reject.byHand],
-    ['sites', `${plan.sites.length}: ${list(plan.sites)}`, plan.sites],
+    ['sites', `${plan.sites.length}: ${list(plan.sites, 600)}`, plan.sites],
     ['pairs', pairWords(plan.pairs), plan.pairs],
-    ['phase.method', phase.method, phase.method],
+    ['phase.method', methodName(phase.method), phase.method],
     ['phase.frequencies', frequencyWords(phase.frequencies), phase.frequencies],
     ['phase.cycles', `${number(phase.cycles.from)} to ${number(phase.cycles.to)}`, phase.cycles],
     ['times.fromS', seconds(times.fromS), times.fromS],
     ['times.toS', seconds(times.toS), times.toS],
     ['times.stepS', seconds(times.stepS), times.stepS],
-    ['measure', plan.measure, plan.measure],
-    ['null', plan.null, plan.null],
-    ['test.tail', test.tail, test.tail],
+    ['measure', measureOf(plan.measure).name, plan.measure],
+    ['null', nullModelOf(plan.null).name, plan.null],
+    ['test.tail', tailWords[test.tail], test.tail],
     ['test.alpha', number(test.alpha), test.alpha],
     ['test.permutations', test.permutations.toLocaleString('en'), test.permutations],
-    ['test.corrections', list(test.corrections), test.corrections],
+    ['test.corrections', correctionWords(test.corrections), test.corrections],
     ['test.clusterFormingZ', number(test.clusterFormingZ), test.clusterFormingZ],
     ['test.seed', test.seed, test.seed],
   ];

@@ -13,8 +13,17 @@ function isMissing(value: unknown): boolean {
   return value === undefined || value === '' || (Array.isArray(value) && value.length === 0);
 }
 
+// What to do about a field that is still empty, where the schema's words do not say it.
+const firstWords: Record<string, string> = {
+  participant: 'Choose a participant.',
+  'a.name': 'Give A a name.',
+  'b.name': 'Give B a name.',
+  'pairs.site': 'Choose the site that all pairs start from.',
+};
+
 export function planIssue(field: string, message: string, value: unknown): PlanIssue {
-  return isMissing(value) ? { field, message, missing: true } : { field, message };
+  if (!isMissing(value)) return { field, message };
+  return { field, message: firstWords[field] ?? message, missing: true };
 }
 
 type ZodIssue = z.core.$ZodIssue;

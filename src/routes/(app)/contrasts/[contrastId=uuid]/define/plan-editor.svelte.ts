@@ -1,12 +1,12 @@
 import type { Consequences, Plan } from '$engine';
 import { planChanges, type PlanChange } from '$lib/model/plan-changes';
+import { EditHistory } from '$lib/model/edit-history';
 import { checkPlan } from '$lib/model/plan-check';
 import { newRule, type PlanDraft, type RuleDraft } from '$lib/model/plan-draft';
 import type { PlanIssue } from '$lib/model/plan-issues';
 import { draftToPlan } from '$lib/model/plan-parse';
 import { recordingNames, type StudyRecording } from '$lib/model/study-recording';
 import { Autosave, type SaveTarget } from './autosave.svelte';
-import { History } from './history';
 import type { Machine } from './machine.svelte';
 import { screenedEpochs } from './screened';
 import { goodSites, siteChoices, usedRecordings, type SiteChoice } from './site-choices';
@@ -49,21 +49,17 @@ export class PlanEditor {
   #previous: Plan | null = null;
   #machine: Machine | null = null;
   #last: Consequences | null = null;
-  readonly #history: History;
+  readonly #history: EditHistory;
 
   readonly names = $derived(recordingNames(this.recordings));
   readonly #parsed = $derived(draftToPlan(this.draft, this.names));
   readonly plan = $derived<Plan | null>(this.#parsed.plan);
   /** A plan for the numbers beside the form; its texts may be stand-ins. */
   readonly countable = $derived(draftToPlan(withTexts(this.draft), this.names).plan);
+  /** Epochs that the limits in µV leave out; null while they are not counted. */
+  readonly amplitude = $derived(this.#machine?.lostOf(this.countable) ?? null);
   readonly #screened = $derived(
-    this.countable
-      ? screenedEpochs(
-          this.countable,
-          this.recordings,
-          this.#machine?.lostOf(this.countable) ?? null,
-        )
-      : null,
+    this.countable ? screenedEpochs(this.countable, this.recordings, this.amplitude) : null,
   );
   /** The limits in µV are in the counts. */
   readonly screened = $derived(this.#screened !== null);
@@ -88,7 +84,7 @@ export class PlanEditor {
     this.recordings = start.recordings;
     this.editable = start.editable;
     this.#previous = start.previous;
-    this.#history = new History(JSON.stringify(start.draft));
+    this.#history = new EditHistory(JSON.stringify(start.draft));
     this.save = new Autosave(start);
   }
 
@@ -153,6 +149,15 @@ export class PlanEditor {
     this.draft.b.rules = second ? [this.#firstRule(first.events.length > 0 ? first : second)] : [];
     const kept = this.draft.sites.filter((site) => this.sites.some((each) => each.site === site));
     this.draft.sites = kept.length >= 2 ? kept : goodSites(this.sites);
+  }
+
+  /** Leaves an epoch out by hand, or takes the mark back. */
+  mark(epoch: { recording: string; onsetS: number }, out: boolean): void {
+    const { recording, onsetS } = epoch;
+    const others = this.draft.epoch.byHand.filter(
+      (each) => each.recording !== recording || each.onsetS !== onsetS,
+    );
+    this.draft.epoch.byHand = out ? [...others, { recording, onsetS }] : others;
   }
 
   addRule(condition: 'a' | 'b', kind: RuleDraft['kind']): void {

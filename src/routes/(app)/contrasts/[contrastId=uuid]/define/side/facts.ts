@@ -1,5 +1,5 @@
 import type { Consequences, LossReason, LostEpoch, Plan } from '$engine';
-import { formatBytes, formatCount, formatNumber, formatP } from '$lib/model/format';
+import { formatBytes, formatCount, formatNumber, formatP, formatSeconds } from '$lib/model/format';
 
 export interface Fact {
   name: string;
@@ -21,6 +21,19 @@ function chanceFacts({ epochs, chance }: Consequences): Fact[] {
     hint,
   });
   return [of('a'), of('b')];
+}
+
+/** Expected time of a run on this machine; nothing while it is not measured. */
+export function timeFacts(seconds: number | null, workers: number): Fact[] {
+  if (seconds === null) return [];
+  const time = seconds < 1 ? 'under 1 s' : formatSeconds(Math.round(seconds));
+  return [
+    {
+      name: 'time on this machine',
+      value: `${time}, ${formatCount(workers, 'worker')}`,
+      hint: 'Measured here on a small sample of this plan; reading the recordings comes on top.',
+    },
+  ];
 }
 
 /** What a plan can show, in the order of the panel. */
@@ -76,7 +89,11 @@ const reasonNames: Record<LossReason, string> = {
   'by-hand': 'marked by hand',
 };
 
-function reasonName(reason: LossReason, { aboveUv, flatBelowUv }: Plan['epoch']['reject']): string {
+/** "above 150 µV": a reason with the limit that it is about. */
+export function reasonName(
+  reason: LossReason,
+  { aboveUv, flatBelowUv }: Plan['epoch']['reject'],
+): string {
   if (reason === 'above-limit') return `above ${aboveUv} µV`;
   if (reason === 'flat') return `flat, below ${flatBelowUv} µV`;
   return reasonNames[reason];

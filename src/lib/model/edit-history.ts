@@ -3,7 +3,7 @@ const groupMs = 800;
 const mostSteps = 200;
 
 /** Undo and redo over whole states as text; knows nothing of forms. */
-export class History {
+export class EditHistory {
   #past: string[] = [];
   #future: string[] = [];
   #present: string;
