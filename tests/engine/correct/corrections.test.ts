@@ -56,6 +56,20 @@ describe('maximum statistic', () => {
     expect(outcome.adjustedP[1]).toBeCloseTo(0.06, 6);
   });
 
+  test('counts a maximum that equals the point but for rounding', () => {
+    const maxStatisticOf = (away: number) =>
+      Array.from({ length: 99 }, (_, p) => (p ? 1 : 3 + away));
+    const p = (away: number) =>
+      maxStatistic.judge(
+        evidenceOf(
+          plainAxes(1, 1, 1),
+          plainMaps(99, { z: [3], maxStatistic: maxStatisticOf(away) }),
+        ),
+      ).adjustedP[0];
+    expect(p(-0.9 * ties.z)).toBeCloseTo(0.02, 6);
+    expect(p(-1.1 * ties.z)).toBeCloseTo(0.01, 6);
+  });
+
   test('looks at the side of the tail only', () => {
     const maps = plainMaps(99, { z: [9, 0, -9] });
     const edges = (tail: 'a-greater' | 'b-greater') =>
