@@ -3,6 +3,7 @@ export type RunErrorCode =
   | 'not-isolated'
   | 'elsewhere'
   | 'network'
+  | 'signed-out'
   | 'recording-missing'
   | 'recording-changed'
   | 'no-epochs'
@@ -21,6 +22,11 @@ export class RunError extends Error {
   ) {
     super(message, options);
   }
+}
+
+/** Would the same happen again, whatever is tried? Then a new plan or a new run is the remedy. */
+export function isFinal(code: RunErrorCode): boolean {
+  return code === 'refused' || code === 'no-epochs';
 }
 
 /** Any thrown value as a RunError; what carries no code of ours came from the engine. */

@@ -12,6 +12,8 @@ export interface PoolOptions {
   /** Over the pool's life; the next crash fails the run. */
   maxRestarts?: number;
   onRestart?: (worker: number, reason: string) => void;
+  /** The worker has answered, and nothing waits for it. */
+  onIdle?: (worker: number) => void;
 }
 
 /** Each worker holds about 100 MB of tables; more than this gains little and costs memory. */
@@ -127,6 +129,7 @@ export class WorkerPool {
     } finally {
       seat.job = null;
       this.#dispatch();
+      if (!seat.job && !this.#ended) this.#options.onIdle?.(index);
     }
   }
 }

@@ -24,6 +24,8 @@ export class PairProgress {
 
   readonly #rate = new Rate();
   #underWay: Record<number, number> = {};
+  /** Words of a worker can arrive after its answer: what is finished is not counted again. */
+  #answered: Record<number, true> = {};
   #finished = 0;
 
   constructor(pairCount: number, permutations: number, workers: number) {
@@ -45,14 +47,19 @@ export class PairProgress {
 
   /** `pairsDone` of the block that begins at `range.from`. */
   pair(range: Range, pairsDone: number, worker: number): void {
+    if (this.#answered[range.from]) return;
     const line = this.workers[worker];
     if (line) line.pairsDone += Math.max(0, pairsDone - (this.#underWay[range.from] ?? 0));
     this.#underWay[range.from] = pairsDone;
     this.#count();
   }
 
-  block(block: PairBlock): void {
+  /** `worker` is null for a block that was kept from before. */
+  block(block: PairBlock, worker: number | null): void {
+    const line = worker === null ? undefined : this.workers[worker];
+    if (line) line.pairsDone += block.pairCount - (this.#underWay[block.firstPair] ?? 0);
     this.#underWay[block.firstPair] = 0;
+    this.#answered[block.firstPair] = true;
     this.#finished += block.pairCount;
     const maxima = this.maxStatistic ?? new Float32Array(this.permutations).fill(-Infinity);
     this.maxStatistic = maxima.map((value, p) => Math.max(value, block.maxStatistic[p]!));
@@ -62,7 +69,7 @@ export class PairProgress {
 
   /** Blocks taken up from a checkpoint count as done, but say nothing about the rate. */
   restore(blocks: PairBlock[]): void {
-    for (const block of blocks) this.block(block);
+    for (const block of blocks) this.block(block, null);
     this.#rate.restart();
     this.rate = null;
   }

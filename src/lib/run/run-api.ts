@@ -53,6 +53,10 @@ async function send(method: string, url: string, body: string | Blob): Promise<R
 async function refusalOf(response: Response): Promise<RunError> {
   const body = (await response.json().catch(() => null)) as { message?: string } | null;
   const message = body?.message ?? `The server answered with status ${response.status}.`;
-  const code: RunErrorCode = response.status >= 500 ? 'network' : 'refused';
-  return new RunError(code, message);
+  return new RunError(codeOf(response.status), message);
+}
+
+function codeOf(status: number): RunErrorCode {
+  if (status === 401) return 'signed-out';
+  return status >= 500 ? 'network' : 'refused';
 }

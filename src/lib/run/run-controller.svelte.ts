@@ -1,12 +1,12 @@
 import { transfer } from 'comlink';
 import { axesOf, engineVersion, planEpochs, withoutLost } from '$engine';
 import type { Axes, Epoch, LostEpoch, PairBlock, Plan, RecordingFacts } from '$engine';
-import type { RunSummary, Timings } from '$lib/model/run';
+import type { RunChange, RunSummary, Timings } from '$lib/model/run';
 import type { RecordingInput, SharedPhases } from '$workers/protocol';
 import { Checkpoints, type RunIdentity } from './checkpoints';
 import { createEngineWorker } from './engine-worker';
 import { tallyOf, type EpochTally } from './epoch-tally';
-import { asRunError, RunError } from './errors';
+import { asRunError, isFinal, RunError } from './errors';
 import { isolationTrouble } from './isolation';
 import { WorkerPool } from './pool';
 import { PairProgress } from './progress.svelte';
@@ -50,6 +50,8 @@ export class RunController {
   pairs = $state.raw<PairProgress | null>(null);
   sent = $state({ bytes: 0, total: 0 });
   workerCount = $state(1);
+  /** Grows with each state that the server was told: what it says of the run is new then. */
+  reported = $state(0);
 
   readonly task: RunTask;
   #pool: WorkerPool | null = null;
@@ -101,7 +103,7 @@ export class RunController {
     if (this.status !== 'running') return;
     this.status = 'paused';
     this.#pool?.pause();
-    this.#report({ state: 'paused', progress: this.share });
+    void this.#report({ state: 'paused', progress: this.share });
   }
 
   goOn(): void {
@@ -110,7 +112,7 @@ export class RunController {
     this.pairs?.restartRate();
     this.#pool?.resume();
     this.#goOn?.();
-    this.#report({ state: 'running', progress: this.share });
+    void this.#report({ state: 'running', progress: this.share });
   }
 
   /** Ends the run for good and forgets its checkpoint. */
@@ -146,21 +148,23 @@ export class RunController {
       if (trouble) throw new RunError('not-isolated', trouble);
       await holdRunLock(this.task.planHash, work);
     } catch (thrown) {
-      this.#fail(asRunError(thrown));
+      await this.#fail(asRunError(thrown));
     } finally {
       this.#pool?.end();
       this.#pool = null;
     }
   }
 
-  #fail(error: RunError): void {
+  async #fail(error: RunError): Promise<void> {
     if (error.code === 'cancelled' || this.#abort.signal.aborted) return;
     this.failure = error;
     this.status = 'failed';
+    if (error.code === 'elsewhere' || !this.runId) return;
+    // Computing the same again from what is kept would only fail the same way.
+    if (isFinal(error.code)) await this.#checkpoints?.remove(this.runId);
     // A refused result was marked by the server already; saying it again changes nothing.
-    if (this.runId && error.code !== 'refused') {
-      this.#report({ state: 'failed', failure: error.message, progress: this.share });
-    }
+    if (error.code === 'refused') return;
+    await this.#report({ state: 'failed', failure: error.message, progress: this.share });
   }
 
   async #work(runId: string): Promise<void> {
@@ -187,9 +191,14 @@ export class RunController {
   }
 
   #openPool(axes: Axes, recordings: RecordingInput[]): StepContext {
+    const onWorker = (worker: number, doing: string): void => {
+      const line = this.pairs?.workers[worker];
+      if (line) line.doing = doing;
+    };
     const pool = new WorkerPool({
       size: this.workerCount,
       createWorker: createEngineWorker,
+      onIdle: (worker) => onWorker(worker, 'waiting'),
       onRestart: (worker) => {
         const line = this.pairs?.workers[worker];
         if (line) line.restarts += 1;
@@ -197,10 +206,6 @@ export class RunController {
     });
     if (this.status === 'paused') pool.pause();
     this.#pool = pool;
-    const onWorker = (worker: number, doing: string): void => {
-      const line = this.pairs?.workers[worker];
-      if (line) line.doing = doing;
-    };
     return { pool, plan: this.task.plan, axes, recordings, onWorker };
   }
 
@@ -269,9 +274,9 @@ export class RunController {
       { phases: shared, draws: drawn },
       {
         pair: (range, pairsDone, worker) => this.pairs?.pair(range, pairsDone, worker),
-        block: (block) => {
+        block: (block, worker) => {
           blocks.push(block);
-          this.pairs?.block(block);
+          this.pairs?.block(block, worker);
           void this.#checkpoints?.saveBlock(identity.runId, block);
           this.#reportProgress();
         },
@@ -330,13 +335,15 @@ export class RunController {
 
   #reportProgress(): void {
     if (performance.now() - this.#lastReport < reportEveryMs) return;
-    this.#report({ progress: this.share });
+    void this.#report({ progress: this.share });
   }
 
   /** Told in passing: a report that is lost costs nothing, the next one says it again. */
-  #report(change: Parameters<typeof changeRun>[1]): void {
+  async #report(change: RunChange): Promise<void> {
     this.#lastReport = performance.now();
-    if (this.runId) void changeRun(this.runId, change).catch(() => undefined);
+    if (!this.runId) return;
+    await changeRun(this.runId, change).catch(() => undefined);
+    if (change.state) this.reported += 1;
   }
 }
 

@@ -92,7 +92,7 @@ export async function pairBlocks(
   shared: { phases: SharedPhases; draws: SharedDraws },
   on: {
     pair: (block: Range, pairsDone: number, worker: number) => void;
-    block: (block: PairBlock) => void;
+    block: (block: PairBlock, worker: number) => void;
   },
 ): Promise<void> {
   const { pool, plan, axes, onWorker } = context;
@@ -105,7 +105,8 @@ export async function pairBlocks(
         onWorker(worker, `pairs ${range.from + 1} to ${range.to}`);
         on.pair(range, 0, worker);
         const onPair = proxy((done: number): void => on.pair(range, done, worker));
-        on.block(await api.pairs(plan, axes, range, shared.phases, shared.draws, onPair));
+        const { phases, draws } = shared;
+        on.block(await api.pairs(plan, axes, range, phases, draws, onPair), worker);
       }),
     ),
   );
