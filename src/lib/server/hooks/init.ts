@@ -3,9 +3,11 @@ import { forgetExpiredSessions } from '../accounts/sessions';
 import { config } from '../config';
 import { log } from '../log';
 import { cleanUploads } from '../uploads';
+import { setHeadersOfFiles } from './security-headers';
 
 /** Runs once before the first request. */
 export const init: ServerInit = async () => {
+  setHeadersOfFiles();
   await Promise.all([forgetExpiredSessions(), cleanUploads()]);
   log.info({ mode: config.mode, origin: config.origin }, 'ready');
 };

@@ -1,3 +1,5 @@
+import { subscribe } from 'node:diagnostics_channel';
+import type { ServerResponse } from 'node:http';
 import type { Handle } from '@sveltejs/kit';
 import { config } from '../config';
 
@@ -23,3 +25,15 @@ export const securityHeaders: Handle = async ({ event, resolve }) => {
   for (const [name, value] of Object.entries(headers)) response.headers.set(name, value);
   return response;
 };
+
+/**
+ * The built server sends its files without asking kit's hooks, yet an isolated page may only
+ * start a worker whose script has these headers too. Node announces each request before anybody
+ * answers it.
+ */
+export function setHeadersOfFiles(): void {
+  subscribe('http.server.request.start', (message) => {
+    const { response } = message as { response: ServerResponse };
+    for (const [name, value] of Object.entries(headers)) response.setHeader(name, value);
+  });
+}
