@@ -154,6 +154,19 @@ export const accessTable: Record<string, Record<string, Expectation | Expectatio
     })),
   },
 
+  '(app)/studies/[studyId=uuid]/recordings/[recordingId=uuid]/+page.server.ts': {
+    load: guarded('recording.read', recordingPage),
+    'actions.mark': guarded('recording.write', (world) => ({
+      ...recordingPage(world),
+      form: { site: 'C3', bad: 'true' },
+    })),
+    'actions.attach': guarded('recording.write', (world) => ({
+      ...recordingPage(world),
+      body: sidecarForm(world),
+    })),
+    'actions.restore': guarded('recording.write', recordingPage),
+  },
+
   '(app)/contrasts/[contrastId=uuid]/+layout.server.ts': { load: guarded('contrast.read', locked) },
   '(app)/contrasts/[contrastId=uuid]/+page.server.ts': { load: guarded('contrast.read', locked) },
   '(app)/contrasts/[contrastId=uuid]/define/+page.server.ts': {
@@ -262,6 +275,10 @@ function locked({ contrastId }: World): RequestParts {
 
 function recording(world: World): RequestParts {
   return { params: { recordingId: world.recording.id } };
+}
+
+function recordingPage({ studyId, recording: { id } }: World): RequestParts {
+  return { params: { studyId, recordingId: id } };
 }
 
 function sidecarForm({ recording: { id } }: World): FormData {
