@@ -44,7 +44,8 @@ print(json.dumps([float(abs(np.exp(1j * (np.array(g)[:, 0] - np.array(g)[:, 1]))
       const values = new Float64Array(1);
       sumCrossTerms(phasors, starts, partners, sums, {
         epochCount: group.length,
-        samplesPerEpoch: 1,
+        sampleCount: 1,
+        partDistance: 1,
       });
       resultantLengths(sums, group.length, values, 1);
       // Phasors are stored in f32, 6e-8 each.

@@ -32,7 +32,7 @@ export function observer(run: RunInput): Observer {
         copyKept(run, j, from + n, phasors, starts[n]);
         copyKept(run, k, from + n, phasors, partnerStarts[n]);
       }
-      const rows = { epochCount, samplesPerEpoch: featureCount };
+      const rows = { epochCount, sampleCount: featureCount, partDistance: featureCount };
       measure.sumTerms(phasors, starts, partnerStarts, sums, rows);
       measure.values(sums, epochCount, out.value, featureCount);
       sumCrossTerms(phasors, starts, partnerStarts, cross, rows);

@@ -1,11 +1,17 @@
 import { countExceedances } from '../kernels/exceedances';
-import { clusterForest } from '../kernels/clusters';
-import { addNullMaps, standardised, type NullMapSettings } from '../kernels/null-maps';
-import { addToMoments, finishMoments, newNullSums } from '../kernels/null-moments';
+import {
+  addNullMaps,
+  newMapScratch,
+  standardised,
+  type NullMapScratch,
+  type NullMapSettings,
+} from '../kernels/null-maps';
+import { addToMoments, finishMoments, newNullSums, type NullSums } from '../kernels/null-moments';
 import { tailSign } from './correct/tail';
 import type { RunCounts } from './digest';
 import { histogramBins } from './histogram';
-import { newMoments, pairStatistic, type PairStatistic } from './null/pair-statistic';
+import type { RunInput } from './null/model';
+import { newMoments, pairStatistic, type Moments, type PairStatistic } from './null/pair-statistic';
 import { nullModelOf } from './null/registry';
 import { observer, type Observed, type Observer } from './observe';
 import { newBlock } from './pair-block';
@@ -49,69 +55,80 @@ export function computePairs(
       `computePairs: range ${range.from} to ${range.to} leaves the plan's ${axes.pairs.length} pairs`,
     );
   }
-  const run = runInput(plan, axes, phases, draws);
   const block = newBlock(axes, range, plan.test.permutations);
-  const work = pairWork(
-    plan,
-    axes,
-    observer(run),
-    pairStatistic(nullModelOf(plan.null), run),
-    block,
-  );
+  const work = new PairWork(plan, axes, runInput(plan, axes, phases, draws), block);
   for (let pair = range.from; pair < range.to; pair++) {
-    const [j, k] = axes.pairs[pair];
-    work(pair - range.from, j, k);
+    work.compute(pair - range.from, axes.pairs[pair]);
     onPair(pair - range.from + 1);
   }
   return block;
 }
 
-/** All that one pair needs, made once for a block: a function that fills one pair of it. */
-function pairWork(
-  plan: Plan,
-  axes: Axes,
-  observe: Observer,
-  statistic: PairStatistic,
-  block: PairBlock,
-): (index: number, j: number, k: number) => void {
-  const featureCount = axes.frequenciesHz.length * axes.timesS.length;
-  const a = newObserved(featureCount);
-  const b = newObserved(featureCount);
-  const observed = new Float64Array(featureCount);
-  const sums = newNullSums(featureCount);
-  const moments = newMoments(featureCount);
-  const settings = mapSettings(plan, axes, moments);
-  const scratch = {
-    z: new Float32Array(featureCount),
-    positive: new Int32Array(featureCount),
-    negative: new Int32Array(featureCount),
-    forest: clusterForest(featureCount),
-  };
-  return (index, j, k) => {
-    const part = pairPart(block, index, featureCount);
-    observe.observe(j, k, 'a', a);
-    observe.observe(j, k, 'b', b);
-    statistic.begin({ j, k }, a.value, b.value, observed);
-    statistic.surrogates.statistic((values, _, rows) => {
-      const count = rows.to - rows.from;
-      addToMoments(values, count, featureCount, sums, rows.from === 0);
-      countExceedances(values, count, observed, part, statistic.tolerance);
-    });
-    finishMoments(sums, plan.test.permutations, ties.zeroSd, moments.mean, moments.sd);
-    statistic.surrogates.statistic((values, _, rows) => {
-      const tile = { first: rows.from, count: rows.to - rows.from };
-      addNullMaps(values, tile, settings, part, scratch);
-    });
-    part.observedA.set(a.value);
-    part.observedB.set(b.value);
-    part.lagA.set(a.lagRad);
-    part.lagB.set(b.lagRad);
+/** All that one pair needs, made once for a block. */
+class PairWork {
+  private readonly featureCount: number;
+  private readonly observer: Observer;
+  private readonly statistic: PairStatistic;
+  private readonly a: Observed;
+  private readonly b: Observed;
+  private readonly observed: Float64Array;
+  private readonly sums: NullSums;
+  private readonly moments: Moments;
+  private readonly settings: NullMapSettings;
+  private readonly scratch: NullMapScratch;
+
+  constructor(
+    private readonly plan: Plan,
+    axes: Axes,
+    run: RunInput,
+    private readonly block: PairBlock,
+  ) {
+    this.featureCount = run.featureCount;
+    this.observer = observer(run);
+    this.statistic = pairStatistic(nullModelOf(plan.null), run);
+    this.a = newObserved(run.featureCount);
+    this.b = newObserved(run.featureCount);
+    this.observed = new Float64Array(run.featureCount);
+    this.sums = newNullSums(run.featureCount);
+    this.moments = newMoments(run.featureCount);
+    this.settings = mapSettings(plan, axes, this.moments);
+    this.scratch = newMapScratch(run.featureCount);
+  }
+
+  /** Fills one pair of the block. */
+  compute(index: number, [j, k]: [number, number]): void {
+    const { observed, moments } = this;
+    const part = pairPart(this.block, index, this.featureCount);
+    this.observer.observe(j, k, 'a', this.a);
+    this.observer.observe(j, k, 'b', this.b);
+    this.statistic.begin({ j, k }, this.a.value, this.b.value, observed);
+    this.summarise(part);
+    part.observedA.set(this.a.value);
+    part.observedB.set(this.b.value);
+    part.lagA.set(this.a.lagRad);
+    part.lagB.set(this.b.lagRad);
     part.nullMean.set(moments.mean);
     part.nullSd.set(moments.sd);
-    for (let x = 0; x < featureCount; x++) {
+    for (let x = 0; x < observed.length; x++) {
       part.z[x] = standardised(observed[x], moments.mean[x], moments.sd[x]);
     }
-  };
+  }
+
+  /** Two passes over the surrogates: moments and counts, then what needs the moments. */
+  private summarise(part: PairPart): void {
+    const { surrogates, tolerance } = this.statistic;
+    const { featureCount, observed, sums, moments } = this;
+    surrogates.statistic((values, _, rows) => {
+      const count = rows.to - rows.from;
+      addToMoments(values, count, featureCount, sums, rows.from === 0);
+      countExceedances(values, count, observed, part, tolerance);
+    });
+    finishMoments(sums, this.plan.test.permutations, ties.zeroSd, moments.mean, moments.sd);
+    surrogates.statistic((values, _, rows) => {
+      const tile = { first: rows.from, count: rows.to - rows.from };
+      addNullMaps(values, tile, this.settings, part, this.scratch);
+    });
+  }
 }
 
 function newObserved(featureCount: number): Observed {
@@ -136,8 +153,10 @@ function mapSettings(
   };
 }
 
+type PairPart = Omit<PairBlock, 'firstPair' | 'pairCount'>;
+
 /** Views of one pair's rows of a block; the distributions are the block's own. */
-function pairPart(block: PairBlock, index: number, featureCount: number) {
+function pairPart(block: PairBlock, index: number, featureCount: number): PairPart {
   const from = index * featureCount;
   const to = from + featureCount;
   const bins = histogramBins.count;

@@ -3,8 +3,8 @@ import type { EpochRows, ShiftedWindow } from '../engine/measure/measure';
 /**
  * Sums of u_j u_k* over epochs, at every sample of the rows.
  * Layout: the real parts of epoch n of site j are
- * `phasors[jStarts[n] .. jStarts[n] + samplesPerEpoch)`, its imaginary parts follow at a distance of
- * `samplesPerEpoch`; k alike. Out: `sums[sample * 2]` real, `sums[sample * 2 + 1]` imaginary.
+ * `phasors[jStarts[n] .. jStarts[n] + sampleCount)`, its imaginary parts follow at a distance of
+ * `partDistance`; k alike. Out: `sums[sample * 2]` real, `sums[sample * 2 + 1]` imaginary.
  * Overwrites `sums`; allocates nothing; does not check its arguments.
  * Cost: one complex product a sample and epoch, accumulated in f64 in the order of the epochs.
  * Source: the cross-term of the phase-locking value, Lachaux et al. 1999.
@@ -16,8 +16,8 @@ export function sumCrossTerms(
   sums: Float64Array,
   rows: EpochRows,
 ): void {
-  const { epochCount, samplesPerEpoch } = rows;
-  sums.fill(0, 0, samplesPerEpoch * 2);
+  const { epochCount, sampleCount, partDistance } = rows;
+  sums.fill(0, 0, sampleCount * 2);
   let n = 0;
   // Two epochs a sweep: half the traffic of the running sums.
   for (; n + 1 < epochCount; n += 2) {
@@ -25,8 +25,8 @@ export function sumCrossTerms(
     const k0 = kStarts[n];
     const j1 = jStarts[n + 1];
     const k1 = kStarts[n + 1];
-    for (let s = 0; s < samplesPerEpoch; s++) {
-      const s2 = s + samplesPerEpoch;
+    for (let s = 0; s < sampleCount; s++) {
+      const s2 = s + partDistance;
       const a = phasors[j0 + s];
       const b = phasors[j0 + s2];
       const c = phasors[k0 + s];
@@ -42,11 +42,11 @@ export function sumCrossTerms(
   for (; n < epochCount; n++) {
     const j = jStarts[n];
     const k = kStarts[n];
-    for (let s = 0; s < samplesPerEpoch; s++) {
+    for (let s = 0; s < sampleCount; s++) {
       const a = phasors[j + s];
-      const b = phasors[j + s + samplesPerEpoch];
+      const b = phasors[j + s + partDistance];
       const c = phasors[k + s];
-      const d = phasors[k + s + samplesPerEpoch];
+      const d = phasors[k + s + partDistance];
       sums[2 * s] += a * c + b * d;
       sums[2 * s + 1] += b * c - a * d;
     }

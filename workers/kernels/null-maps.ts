@@ -1,4 +1,4 @@
-import { joinClusters, releaseClusters, type ClusterForest } from './clusters';
+import { clusterForest, joinClusters, releaseClusters, type ClusterForest } from './clusters';
 
 /** What a pair's null maps are made with; constant over a run but for the moments. */
 export interface NullMapSettings {
@@ -29,6 +29,15 @@ export interface NullMapScratch {
   positive: Int32Array;
   negative: Int32Array;
   forest: ClusterForest;
+}
+
+export function newMapScratch(featureCount: number): NullMapScratch {
+  return {
+    z: new Float32Array(featureCount),
+    positive: new Int32Array(featureCount),
+    negative: new Int32Array(featureCount),
+    forest: clusterForest(featureCount),
+  };
 }
 
 /** A standardised value, rounded to f32: what z means everywhere. */
@@ -63,8 +72,7 @@ export function addNullMaps(
     let positiveCount = 0;
     let negativeCount = 0;
     for (let x = 0; x < featureCount; x++, at++) {
-      const spread = sd[x];
-      const value = spread === 0 ? 0 : Math.fround((values[at] - mean[x]) / spread);
+      const value = standardised(values[at], mean[x], sd[x]);
       z[x] = value;
       if (value > highest) highest = value;
       if (value < lowest) lowest = value;

@@ -54,7 +54,6 @@ export function evidenceOf(
     maps,
     tail,
     alpha,
-    clusterFormingZ,
     permutations,
     p: Float64Array.from(maps.z, (_, x) =>
       tailP(tailExceedances(maps.upper[x], maps.lower[x], tail), permutations, tail),

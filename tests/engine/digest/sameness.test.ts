@@ -158,6 +158,7 @@ describe('concludeFrom', () => {
   test('refuses maps that the plan cannot have made, naming map, place and value', () => {
     expect(conclusion({ z: maps.z.subarray(1) })).toThrow('z: 47 values where the plan makes 48');
     expect(conclusion({ z: maps.z.with(5, Number.NaN) })).toThrow('z: NaN at 5 is out of range');
+    expect(conclusion({ observedA: maps.observedA.with(1, 1.01) })).toThrow('observedA: 1.0');
     expect(conclusion({ upper: maps.upper.with(2, 400) })).toThrow('upper: 400 at 2');
     expect(conclusion({ upper: maps.upper.map(() => 0) })).toThrow('leave out some of 399');
     expect(conclusion({ nullSd: maps.nullSd.with(0, -1) })).toThrow('nullSd: -1 at 0');

@@ -17,7 +17,7 @@ function ispcOf(differencesDeg: number[]): number {
   const sums = new Float64Array(2);
   const values = new Float64Array(1);
   const partner = starts.map((start) => start + 2 * n);
-  sumCrossTerms(phasors, starts, partner, sums, { epochCount: n, samplesPerEpoch: 1 });
+  sumCrossTerms(phasors, starts, partner, sums, { epochCount: n, sampleCount: 1, partDistance: 1 });
   resultantLengths(sums, n, values, 1);
   return values[0];
 }

@@ -161,6 +161,23 @@ describe('computePairs', () => {
     expect(stays).toBeGreaterThan(30);
   });
 
+  test('gives the same numbers where a pair has more features than are tabulated at once', () => {
+    const run = tinyRun(noise('many features'), {
+      siteCount: 2,
+      frequencyCount: 41,
+      timeCount: 1601,
+      test: { permutations: 19 },
+    });
+    const draws = drawAll(run);
+    const maps = mapsOf(run, draws);
+    // 16 epochs of 2 terms: 65,536 features are held at once.
+    for (const x of [0, 65_535, 65_536, 65_640]) {
+      const feature = naiveFeature(run, draws, 0, Math.floor(x / 1601), x % 1601);
+      expect(Math.abs(maps.z[x] - feature.z)).toBeLessThan(zTolerance);
+      expect(Math.abs(maps.nullSd[x] - feature.sd)).toBeLessThan(measureTolerance);
+    }
+  });
+
   test('states the preferred lag of each condition', () => {
     const run = tinyRun((site, epoch) => (site === 0 ? (epoch < 9 ? 0.5 : -2) : 0));
     const maps = mapsOf(run);

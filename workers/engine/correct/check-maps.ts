@@ -1,3 +1,5 @@
+import { measureOf } from '../measure/registry';
+import type { Plan } from '../plan';
 import type { Axes } from '../types';
 import type { ClaimMaps } from './correction';
 
@@ -6,18 +8,20 @@ import type { ClaimMaps } from './correction';
  * it (through `concludeFrom`) on what it was sent.
  * @throws RangeError naming the map, the index and the value
  */
-export function checkMaps(axes: Axes, permutations: number, maps: ClaimMaps): void {
+export function checkMaps(plan: Plan, axes: Axes, maps: ClaimMaps): void {
+  const { permutations } = plan.test;
+  const [least, most] = measureOf(plan.measure).range;
   const cells = axes.pairs.length * axes.frequenciesHz.length * axes.timesS.length;
-  const whole = (low: number, high: number) => (value: number) => value >= low && value <= high;
+  const within = (low: number, high: number) => (value: number) => value >= low && value <= high;
   const finite = (value: number) => Number.isFinite(value);
-  check('observedA', maps.observedA, cells, finite);
-  check('observedB', maps.observedB, cells, finite);
-  check('lagA', maps.lagA, cells, whole(-3.15, 3.15));
-  check('lagB', maps.lagB, cells, whole(-3.15, 3.15));
+  check('observedA', maps.observedA, cells, within(least, most));
+  check('observedB', maps.observedB, cells, within(least, most));
+  check('lagA', maps.lagA, cells, within(-3.15, 3.15));
+  check('lagB', maps.lagB, cells, within(-3.15, 3.15));
   check('nullSd', maps.nullSd, cells, (value) => finite(value) && value >= 0);
   check('z', maps.z, cells, finite);
-  check('upper', maps.upper, cells, whole(0, permutations));
-  check('lower', maps.lower, cells, whole(0, permutations));
+  check('upper', maps.upper, cells, within(0, permutations));
+  check('lower', maps.lower, cells, within(0, permutations));
   check('maxStatistic', maps.maxStatistic, permutations, finite);
   check('maxClusterMass', maps.maxClusterMass, permutations, (v) => finite(v) && v >= 0);
   for (let x = 0; x < cells; x++) {

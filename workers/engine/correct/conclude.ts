@@ -18,7 +18,7 @@ export type Claims = Omit<Outcome, 'digest'>;
  */
 export function concludeFrom(plan: Plan, axes: Axes, maps: ClaimMaps): Claims {
   const { tail, alpha, permutations, clusterFormingZ } = plan.test;
-  checkMaps(axes, permutations, maps);
+  checkMaps(plan, axes, maps);
   const p = new Float64Array(maps.z.length);
   for (let x = 0; x < p.length; x++) {
     p[x] = tailP(tailExceedances(maps.upper[x], maps.lower[x], tail), permutations, tail);
@@ -30,7 +30,6 @@ export function concludeFrom(plan: Plan, axes: Axes, maps: ClaimMaps): Claims {
     tail,
     alpha,
     permutations,
-    clusterFormingZ,
     p,
     clusters,
   };

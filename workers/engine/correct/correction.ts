@@ -23,7 +23,6 @@ export interface Evidence {
   tail: Tail;
   alpha: number;
   permutations: number;
-  clusterFormingZ: number;
   /** p of each feature by tail, f64. */
   p: Float64Array;
   /** Observed clusters of the tail's signs, largest mass first. */

@@ -1,9 +1,11 @@
-/** Where the phasors of one site pair lie, epoch by epoch; element offsets of the real parts. */
+/** Which stretches of phasors are summed, epoch by epoch. */
 export interface EpochRows {
   /** Epochs to sum: the first `epochCount` entries of both lists of starts. */
   epochCount: number;
-  /** Distance from an epoch's real parts to its imaginary parts; see phase/layout.ts. */
-  samplesPerEpoch: number;
+  /** Neighbouring samples of a stretch: features. */
+  sampleCount: number;
+  /** From a real part to its imaginary part, elements; samplesPerEpoch of phase/layout.ts. */
+  partDistance: number;
 }
 
 /** One epoch's whole window under many circular shifts, for nulls that keep every sample. */
@@ -38,7 +40,8 @@ export interface Measure<Id extends string = string> {
   termCount: number;
   /**
    * Overwrites `sums[feature * termCount + term]` with the sums over epochs. `jStarts[n]` and
-   * `kStarts[n]` need not be of the same epoch: that is how trials are shuffled.
+   * `kStarts[n]`, where the stretches' real parts begin, need not be of the same epoch: that is
+   * how trials are shuffled.
    */
   sumTerms(
     phasors: Float32Array,

@@ -1,6 +1,6 @@
 import { labelBlockBits, labelBlockCount } from '../../kernels/label-sums';
 import { logChoose } from '../numbers/counting';
-import { labelSampler } from './label-sampler';
+import { LabelSampler } from './label-sampler';
 import type { DrawShape, NullModel, PermutationRange } from './model';
 import { permutationGenerator } from './random';
 
@@ -51,5 +51,5 @@ export const labels: NullModel<'labels'> = {
   hasTwins: (shape) => shape.epochsA === shape.epochsB,
   drawsByteLength: (shape) => shape.permutations * labelBlockCount(shape.epochsA + shape.epochsB),
   draw,
-  sampler: labelSampler,
+  sampler: (run) => new LabelSampler(run),
 };

@@ -9,54 +9,75 @@ const cachedSums = 2 ** 17;
  * rows, and is added to the sums of some hundred permutations at once: each epoch's window then
  * stays in cache while it is used.
  */
-export function shiftSampler(run: RunInput): PairSampler {
-  const { measure, layout, shape, featureCount } = run;
-  const { frequencyCount, samplesPerFrequency: sampleCount, keptSamples } = layout;
-  const { epochCount, siteCount } = layout;
-  const sumsPerPermutation = featureCount * measure.termCount;
-  const atOnce = Math.min(shape.permutations, Math.ceil(cachedSums / sumsPerPermutation));
-  const sums = new Float64Array(atOnce * sumsPerPermutation);
-  const values = new Float64Array(atOnce * featureCount);
-  const jWindow = new Float32Array(2 * layout.samplesPerEpoch);
-  const kWindow = new Float32Array(2 * layout.samplesPerEpoch);
-  const window: ShiftedWindow = {
-    frequencyCount,
-    sampleCount,
-    keptSamples,
-    shifts: new Uint16Array(run.draws),
-    jShift: 0,
-    kShift: 0,
-    shiftStride: siteCount * epochCount,
-    permutations: 0,
-  };
+export class ShiftSampler implements PairSampler {
+  /** Permutations summed at once. */
+  private readonly atOnce: number;
+  /** `[permutation][time][frequency][term]`. */
+  private readonly sums: Float64Array;
+  private readonly values: Float64Array;
+  private readonly jWindow: Float32Array;
+  private readonly kWindow: Float32Array;
+  private readonly window: ShiftedWindow;
 
-  function sumCondition(j: number, k: number, from: number, epochs: number, first: number): void {
-    sums.fill(0);
-    for (let n = from; n < from + epochs; n++) {
-      sampleMajor(run, j, n, jWindow);
-      sampleMajor(run, k, n, kWindow);
-      window.jShift = (first * siteCount + j) * epochCount + n;
-      window.kShift = (first * siteCount + k) * epochCount + n;
-      measure.addShiftedTerms(jWindow, kWindow, sums, window);
+  constructor(private readonly run: RunInput) {
+    const { measure, layout, shape, featureCount } = run;
+    const sumsPerPermutation = featureCount * measure.termCount;
+    this.atOnce = Math.min(shape.permutations, Math.ceil(cachedSums / sumsPerPermutation));
+    this.sums = new Float64Array(this.atOnce * sumsPerPermutation);
+    this.values = new Float64Array(this.atOnce * featureCount);
+    this.jWindow = new Float32Array(2 * layout.samplesPerEpoch);
+    this.kWindow = new Float32Array(2 * layout.samplesPerEpoch);
+    this.window = {
+      frequencyCount: layout.frequencyCount,
+      sampleCount: layout.samplesPerFrequency,
+      keptSamples: layout.keptSamples,
+      shifts: new Uint16Array(run.draws),
+      jShift: 0,
+      kShift: 0,
+      shiftStride: layout.siteCount * layout.epochCount,
+      permutations: 0,
+    };
+  }
+
+  surrogates(
+    j: number,
+    k: number,
+    range: PermutationRange,
+    first: Float32Array,
+    second: Float32Array,
+  ): void {
+    const { epochsA, epochsB } = this.run.shape;
+    for (let p = range.from; p < range.to; p += this.atOnce) {
+      const part = { from: p, to: Math.min(range.to, p + this.atOnce) };
+      const at = (p - range.from) * this.run.featureCount;
+      this.condition(j, k, part, { from: 0, epochs: epochsA }, first, at);
+      this.condition(j, k, part, { from: epochsA, epochs: epochsB }, second, at);
     }
   }
 
-  return {
-    surrogates(j, k, range, first, second) {
-      for (let p = range.from; p < range.to; p += atOnce) {
-        const part = { from: p, to: Math.min(range.to, p + atOnce) };
-        window.permutations = part.to - part.from;
-        for (const [from, epochs, out] of [
-          [0, shape.epochsA, first],
-          [shape.epochsA, shape.epochsB, second],
-        ] as const) {
-          sumCondition(j, k, from, epochs, p);
-          measure.values(sums, epochs, values, window.permutations * featureCount);
-          store(values, part, run, out, (p - range.from) * featureCount);
-        }
-      }
-    },
-  };
+  private condition(
+    j: number,
+    k: number,
+    part: PermutationRange,
+    { from, epochs }: { from: number; epochs: number },
+    out: Float32Array,
+    at: number,
+  ): void {
+    const { measure, layout, featureCount } = this.run;
+    const { siteCount, epochCount } = layout;
+    const { sums, values, window, jWindow, kWindow } = this;
+    window.permutations = part.to - part.from;
+    sums.fill(0);
+    for (let n = from; n < from + epochs; n++) {
+      sampleMajor(this.run, j, n, jWindow);
+      sampleMajor(this.run, k, n, kWindow);
+      window.jShift = (part.from * siteCount + j) * epochCount + n;
+      window.kShift = (part.from * siteCount + k) * epochCount + n;
+      measure.addShiftedTerms(jWindow, kWindow, sums, window);
+    }
+    measure.values(sums, epochs, values, window.permutations * featureCount);
+    store(values, window, out, at);
+  }
 }
 
 /** Copies one epoch of one site from `[part][frequency][sample]` to `[sample][frequency][part]`. */
@@ -76,17 +97,11 @@ function sampleMajor(run: RunInput, site: number, epoch: number, out: Float32Arr
 }
 
 /** Values come `[permutation][t][f]`; surrogates are `[permutation][f][t]`. */
-function store(
-  values: Float64Array,
-  range: PermutationRange,
-  run: RunInput,
-  out: Float32Array,
-  at: number,
-): void {
-  const { frequencyCount, keptSamples } = run.layout;
-  const timeCount = keptSamples.length;
-  for (let p = 0; p < range.to - range.from; p++) {
-    const row = p * run.featureCount;
+function store(values: Float64Array, window: ShiftedWindow, out: Float32Array, at: number): void {
+  const { frequencyCount, permutations } = window;
+  const timeCount = window.keptSamples.length;
+  const featureCount = frequencyCount * timeCount;
+  for (let row = 0; row < permutations * featureCount; row += featureCount) {
     for (let t = 0; t < timeCount; t++) {
       for (let f = 0; f < frequencyCount; f++) {
         out[at + row + f * timeCount + t] = values[row + t * frequencyCount + f];

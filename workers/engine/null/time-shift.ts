@@ -1,6 +1,6 @@
 import type { DrawShape, NullModel, PermutationRange } from './model';
 import { permutationGenerator } from './random';
-import { shiftSampler } from './shift-sampler';
+import { ShiftSampler } from './shift-sampler';
 
 /** Shifts are kept as 16-bit numbers. */
 const mostSamples = 65_536;
@@ -48,5 +48,5 @@ export const timeShift: NullModel<'time-shift'> = {
   drawsByteLength: (shape) =>
     shape.permutations * shape.siteCount * (shape.epochsA + shape.epochsB) * 2,
   draw,
-  sampler: shiftSampler,
+  sampler: (run) => new ShiftSampler(run),
 };

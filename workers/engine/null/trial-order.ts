@@ -61,7 +61,8 @@ function sampler(run: RunInput): PairSampler {
           place(kStarts, k, p, from, epochs);
           measure.sumTerms(run.phasors, jStarts, kStarts, sums, {
             epochCount: epochs,
-            samplesPerEpoch,
+            sampleCount: featureCount,
+            partDistance: samplesPerEpoch,
           });
           measure.values(sums, epochs, values, featureCount);
           out.set(values, (p - range.from) * featureCount);
