@@ -109,8 +109,7 @@ function problemOf(reason: unknown): TransferProblem {
 /** The message of the application's error shape. */
 export function messageIn(body: string): string {
   try {
-    const parsed = JSON.parse(body) as { message?: string; error?: { message?: string } };
-    const message = parsed.error?.message ?? parsed.message;
+    const { message } = JSON.parse(body) as { message?: string };
     if (message) return message;
   } catch {
     // Not JSON: a proxy's page, which says nothing to a person.

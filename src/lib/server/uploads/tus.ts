@@ -12,7 +12,7 @@ interface TusError {
 }
 
 function refusal(status: number, code: string, message: string): TusError {
-  return { status_code: status, body: JSON.stringify({ error: { code, message } }) };
+  return { status_code: status, body: JSON.stringify({ code, message }) };
 }
 
 const unknownUpload = () =>
@@ -71,7 +71,7 @@ async function claimedBy(db: Db, member: Member, upload: Upload) {
   return { studyId, filename, teamId: member.teamId, personId: member.personId };
 }
 
-/** The application's one error shape, also for what the tus server itself refuses. */
+/** The shape that kit gives every other refusal, also for what the tus server itself refuses. */
 function explained(reason: Error | TusError): TusError {
   if (!('status_code' in reason)) {
     log.error({ err: reason }, 'upload failed');
