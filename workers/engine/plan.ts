@@ -15,6 +15,8 @@ export const planLimits = {
 const finite = z.number();
 const hz = finite.positive('must be above 0 Hz');
 const label = z.string().trim().min(1).max(80);
+/** As it stands in the recording, blanks and all. */
+const eventLabel = z.string().min(1).max(1000);
 const sha256 = z.string().regex(/^[0-9a-f]{64}$/, 'must be 64 hexadecimal digits');
 
 /** Which moments of a recording become epochs of a condition. */
@@ -23,7 +25,7 @@ export const ruleSchema = z.discriminatedUnion('kind', [
     kind: z.literal('events'),
     recording: sha256,
     /** An event is taken when its label is one of these, exactly. */
-    labels: z.array(label).min(1, 'choose at least one event label'),
+    labels: z.array(eventLabel).min(1, 'choose at least one event label'),
   }),
   z
     .strictObject({

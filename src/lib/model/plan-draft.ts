@@ -6,7 +6,7 @@ import { numberText } from './number-text';
 // What a person has typed so far. Numbers stay text, so that "abc" or an empty field survives a
 // reload and is reported beside its field; values of a choice that is not taken now are kept too.
 const typed = z.string().max(400);
-const names = z.array(z.string().max(255)).max(2000);
+const names = z.array(z.string().max(1000)).max(2000);
 
 const ruleDraftSchema = z.strictObject({
   kind: z.enum(['events', 'even']),

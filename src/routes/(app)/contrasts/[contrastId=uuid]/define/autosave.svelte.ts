@@ -3,6 +3,8 @@ import { forgetKept, keepDraft } from './draft-keeper';
 
 const quietMs = 1000;
 const retryMs = 10_000;
+/** Browsers refuse requests that outlive their page above 64 KiB; characters may take 2 bytes. */
+const mostKeptAlive = 30_000;
 
 export interface NewerDraft {
   draft: PlanDraft;
@@ -63,14 +65,14 @@ export class Autosave {
   }
 
   /** Sends what waits now; true when the server has everything. */
-  async flush(): Promise<boolean> {
+  async flush(leaving = false): Promise<boolean> {
     clearTimeout(this.#timer);
     if (this.#sending) await this.#sending;
     if (this.#pending && this.state !== 'newer' && this.state !== 'locked') {
-      this.#sending = this.#send(this.#pending);
+      this.#sending = this.#send(this.#pending, leaving);
       await this.#sending;
       this.#sending = null;
-      if (this.#pending && this.state === 'waiting') return this.flush();
+      if (this.#pending && this.state === 'waiting') return this.flush(leaving);
     }
     return this.state === 'saved';
   }
@@ -79,7 +81,7 @@ export class Autosave {
   leave(): void {
     if (!this.#pending || this.state === 'saved') return;
     this.#keep(this.#pending);
-    void this.flush();
+    void this.flush(true);
   }
 
   /** Goes on from the newer draft, whichever of the two is kept from now on. */
@@ -106,15 +108,16 @@ export class Autosave {
     this.unkept = !keepDraft(contrastId, version, draft, this.revision);
   }
 
-  async #send(draft: PlanDraft): Promise<void> {
+  async #send(draft: PlanDraft, leaving: boolean): Promise<void> {
     const { contrastId, version } = this.#target;
     this.state = 'saving';
+    const body = JSON.stringify({ version, basedOn: this.revision, draft });
     try {
       const response = await fetch(`/api/contrasts/${contrastId}/draft`, {
         method: 'PUT',
         headers: { 'content-type': 'application/json' },
-        body: JSON.stringify({ version, basedOn: this.revision, draft }),
-        keepalive: true,
+        body,
+        keepalive: leaving && body.length < mostKeptAlive,
       });
       if (response.status !== 200 && response.status !== 409) {
         this.#fail(draft, response.status === 401 ? 'signed-out' : 'failed');

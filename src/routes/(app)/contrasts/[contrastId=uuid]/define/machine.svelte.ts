@@ -1,7 +1,7 @@
 import { axesOf, planEpochs, type Consequences, type LostEpoch, type Plan } from '$engine';
 import type { StudyRecording } from '$lib/model/study-recording';
 import { createEngineWorker } from '$lib/run/engine-worker';
-import { asRunError } from '$lib/run/errors';
+import { asRunError, RunError } from '$lib/run/errors';
 import { poolSize, WorkerPool } from '$lib/run/pool';
 import { fetchRecording, isKept } from '$lib/run/recording-cache';
 import { screen } from '$lib/run/steps';
@@ -31,6 +31,7 @@ export class Machine {
   #timeTimer: ReturnType<typeof setTimeout> | undefined;
   #timedKey = '';
   #countingKey = '';
+  #closed = false;
 
   /** The count, if it is one of this plan. */
   lostOf(plan: Plan | null): LostEpoch[] | null {
@@ -54,7 +55,7 @@ export class Machine {
 
   async countNow(plan: Plan, recordings: readonly StudyRecording[]): Promise<void> {
     const key = countKey(plan);
-    if (this.#countingKey === key) return;
+    if (this.#closed || this.#countingKey === key) return;
     this.#countingKey = key;
     this.failure = '';
     this.progress = 0;
@@ -63,6 +64,7 @@ export class Machine {
       if (this.#countingKey === key) this.count = { key, lost };
     } catch (error) {
       if (this.#countingKey === key) this.failure = asRunError(error).message;
+      this.#forgetPool();
     } finally {
       if (this.#countingKey === key) {
         this.#countingKey = '';
@@ -72,14 +74,21 @@ export class Machine {
   }
 
   close(): void {
+    this.#closed = true;
     clearTimeout(this.#countTimer);
     clearTimeout(this.#timeTimer);
     this.#countingKey = '';
+    this.#forgetPool();
+  }
+
+  /** A pool whose workers broke answers nothing any more; the next work opens a new one. */
+  #forgetPool(): void {
     this.#pool?.end();
     this.#pool = null;
   }
 
   #open(): WorkerPool {
+    if (this.#closed) throw new RunError('cancelled', 'The page was left.');
     const size = poolSize(null, navigator.hardwareConcurrency);
     this.#pool ??= new WorkerPool({ size, createWorker: createEngineWorker });
     this.workers = size;
@@ -117,9 +126,9 @@ export class Machine {
     facts: Consequences,
   ): Promise<void> {
     this.#timedKey = key;
-    const pool = this.#open();
     const { a, b } = facts.epochs;
     try {
+      const pool = this.#open();
       const axes = axesOf(plan, [...recordings]);
       const cost = await pool.run((api) => api.calibrate(plan, { epochsA: a, epochsB: b, axes }));
       if (this.#timedKey !== key) return;
@@ -127,7 +136,9 @@ export class Machine {
       this.seconds = work / Math.min(pool.size, Math.max(1, facts.pairs));
     } catch {
       // A time that cannot be measured is not shown; the run itself will say what is wrong.
-      if (this.#timedKey === key) this.seconds = null;
+      if (this.#timedKey !== key) return;
+      this.seconds = null;
+      this.#timedKey = '';
     }
   }
 }
