@@ -1,3 +1,6 @@
+/** Arrow keys pass many keys by; only one that is stayed on is fetched. */
+const restMs = 60;
+
 /**
  * One thing fetched by key, with its states. What was shown stays until the next has arrived, so
  * that walking with the arrow keys does not flicker; `shownKey` says whose it is.
@@ -35,6 +38,7 @@ export class Fetched<Value> {
     this.#under = under;
     this.status = 'loading';
     try {
+      if (this.value !== null) await rest(under.signal);
       const value = await this.#get(key, under.signal);
       this.#keep(key, value);
       if (key === this.#wanted) this.#show(key, value);
@@ -56,4 +60,14 @@ export class Fetched<Value> {
     this.#kept.push({ key, value });
     if (this.#kept.length > 24) this.#kept.shift();
   }
+}
+
+function rest(signal: AbortSignal): Promise<void> {
+  return new Promise((resolve, reject) => {
+    const timer = setTimeout(resolve, restMs);
+    signal.addEventListener('abort', () => {
+      clearTimeout(timer);
+      reject(new DOMException('passed by', 'AbortError'));
+    });
+  });
 }
