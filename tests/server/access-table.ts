@@ -165,6 +165,10 @@ export const accessTable: Record<string, Record<string, Expectation | Expectatio
       body: sidecarForm(world),
     })),
     'actions.restore': guarded('recording.write', recordingPage),
+    'actions.participant': guarded('recording.write', (world) => ({
+      ...recordingPage(world),
+      form: { code: 'P77' },
+    })),
   },
 
   '(app)/contrasts/[contrastId=uuid]/+layout.server.ts': { load: guarded('contrast.read', locked) },

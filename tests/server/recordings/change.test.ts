@@ -1,6 +1,7 @@
 import { afterAll, afterEach, beforeEach, describe, expect, it } from 'vitest';
 import { createContrast } from '$lib/server/contrasts';
 import {
+  assignParticipant,
   attachSidecars,
   listRecordings,
   markChannel,
@@ -87,6 +88,17 @@ describe('a stored recording', () => {
     });
     const detail = await recordingDetail(db, lab.member.teamId, lab.studyId, id);
     expect(detail.events.map((event) => event.label)).toEqual(['go', 'stöp']);
+  });
+
+  it('can be given to another participant until a locked plan names it', async () => {
+    const { id, sha256 } = await ingested();
+    expect(await assignParticipant(db, lab.member, id, 'P02')).toEqual({ ok: true });
+    const moved = await recordingDetail(db, lab.member.teamId, lab.studyId, id);
+    expect(moved.participant).toBe('P02');
+    await lockPlanOn(sha256, 'Cued against free');
+    expect(await assignParticipant(db, lab.member, id, 'P03')).toMatchObject({ ok: false });
+    const codes = await listParticipants(db, lab.member.teamId, lab.studyId);
+    expect(codes.map((participant) => participant.code)).toEqual(['P01', 'P02']);
   });
 
   it('remembers which channels are bad', async () => {

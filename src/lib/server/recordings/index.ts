@@ -6,5 +6,6 @@ export { recordingFacts, type RecordingSelection } from './facts';
 export { IngestError } from './ingest-error';
 export { ingestRecording, type Ingested, type NewRecording } from './ingest';
 export { listRecordings, type ListedRecording } from './list';
+export { assignParticipant, type Assigned } from './participant';
 export { removeRecording, type RemovedRecording } from './remove';
 export { type SidecarFile, type SidecarFiles } from './sidecars';

@@ -17,6 +17,7 @@ import type { Storage } from '../storage';
 import { storedBytes } from './blanked-stream';
 import { openFileSource } from './file-source';
 import { IngestError } from './ingest-error';
+import { participantWith } from './participant';
 import { insertChannels, insertEvents } from './rows';
 import { readSidecars, type SidecarFiles } from './sidecars';
 
@@ -130,13 +131,14 @@ async function saveRows(db: Db, member: Member, input: NewRecording, stored: Sto
   const { id, file, described } = stored;
   const { teamId } = member;
   await db.transaction().execute(async (trx) => {
-    const participantId = await participantWith(trx, teamId, input);
+    const { studyId, participantCode: code } = input;
+    const participantId = await participantWith(trx, teamId, { studyId, code });
     await trx
       .insertInto('recording')
       .values({
         id,
         teamId,
-        studyId: input.studyId,
+        studyId,
         participantId,
         name: input.name,
         sha256: stored.sha256,
@@ -170,26 +172,6 @@ async function saveRows(db: Db, member: Member, input: NewRecording, stored: Sto
       },
     );
   });
-}
-
-async function participantWith(
-  trx: Db,
-  teamId: string,
-  { studyId, participantCode }: NewRecording,
-) {
-  await trx
-    .insertInto('participant')
-    .values({ teamId, studyId, code: participantCode })
-    .onConflict((conflict) => conflict.constraint('participant_study_code_key').doNothing())
-    .execute();
-  const { id } = await trx
-    .selectFrom('participant')
-    .select('id')
-    .where('teamId', '=', teamId)
-    .where('studyId', '=', studyId)
-    .where('code', '=', participantCode)
-    .executeTakeFirstOrThrow();
-  return id;
 }
 
 async function duplicateOf(db: Db, teamId: string, studyId: string, contentSha256: string) {

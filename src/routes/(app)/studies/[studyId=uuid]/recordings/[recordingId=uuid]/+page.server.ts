@@ -1,8 +1,14 @@
 import { fail } from '@sveltejs/kit';
 import { z } from 'zod';
+import { participantCodePattern, participantCodeRule } from '$lib/model/participant';
 import { allow, may } from '$lib/server/access';
 import { db } from '$lib/server/database';
-import { markChannel, recordingDetail, restoreAnnotations } from '$lib/server/recordings';
+import {
+  assignParticipant,
+  markChannel,
+  recordingDetail,
+  restoreAnnotations,
+} from '$lib/server/recordings';
 import { attachFromForm } from '$lib/server/recordings/attach-form';
 import { storage } from '$lib/server/storage';
 
@@ -41,6 +47,17 @@ export const actions = {
     const form = await event.request.formData();
     const attached = await attachFromForm(db, storage, member, event.params.recordingId, form);
     return attached.ok ? { attached: true } : fail(400, { message: attached.message });
+  },
+
+  participant: async (event) => {
+    const member = allow(event, 'recording.write');
+    const code = (await event.request.formData()).get('code');
+    if (typeof code !== 'string' || !participantCodePattern.test(code.trim())) {
+      return fail(400, { message: `Participant code: ${participantCodeRule}` });
+    }
+    const { recordingId } = event.params;
+    const assigned = await assignParticipant(db, member, recordingId, code.trim());
+    return assigned.ok ? { assigned: true } : fail(409, { message: assigned.message });
   },
 
   restore: async (event) => {
