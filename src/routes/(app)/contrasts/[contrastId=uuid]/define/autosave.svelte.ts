@@ -67,7 +67,8 @@ export class Autosave {
   /** Sends what waits now; true when the server has everything. */
   async flush(leaving = false): Promise<boolean> {
     clearTimeout(this.#timer);
-    if (this.#sending) await this.#sending;
+    // Two callers may wait for one request: the first to go on sends, the other waits again.
+    while (this.#sending) await this.#sending;
     if (this.#pending && this.state !== 'newer' && this.state !== 'locked') {
       this.#sending = this.#send(this.#pending, leaving);
       await this.#sending;
