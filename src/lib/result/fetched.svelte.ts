@@ -3,12 +3,11 @@ const restMs = 60;
 
 /**
  * One thing fetched by key, with its states. What was shown stays until the next has arrived, so
- * that walking with the arrow keys does not flicker; `shownKey` says whose it is.
+ * that walking with the arrow keys does not flicker; it is `stale` meanwhile, to be drawn dim.
  */
 export class Fetched<Value> {
   status = $state.raw<'idle' | 'loading' | 'ready' | 'failed'>('idle');
   value = $state.raw<Value | null>(null);
-  shownKey = $state.raw<string | null>(null);
   message = $state.raw('');
 
   readonly #get: (key: string, signal: AbortSignal) => Promise<Value>;
@@ -20,12 +19,17 @@ export class Fetched<Value> {
     this.#get = get;
   }
 
+  /** What is shown belongs to the key before. */
+  get stale(): boolean {
+    return this.status === 'loading' && this.value !== null;
+  }
+
   want(key: string): void {
     if (key === this.#wanted) return;
     this.#wanted = key;
     this.#under?.abort();
     const kept = this.#kept.find((one) => one.key === key);
-    if (kept) this.#show(key, kept.value);
+    if (kept) this.#show(kept.value);
     else void this.#load(key);
   }
 
@@ -41,17 +45,18 @@ export class Fetched<Value> {
       if (this.value !== null) await rest(under.signal);
       const value = await this.#get(key, under.signal);
       this.#keep(key, value);
-      if (key === this.#wanted) this.#show(key, value);
+      if (key === this.#wanted) this.#show(value);
     } catch (reason) {
       if (under.signal.aborted || key !== this.#wanted) return;
+      // Never another pair's numbers under this pair's name.
+      this.value = null;
       this.status = 'failed';
       this.message = reason instanceof Error ? reason.message : String(reason);
     }
   }
 
-  #show(key: string, value: Value): void {
+  #show(value: Value): void {
     this.value = value;
-    this.shownKey = key;
     this.status = 'ready';
   }
 
