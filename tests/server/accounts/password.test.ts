@@ -11,7 +11,7 @@ import {
 import { readSession } from '$lib/server/accounts/sessions';
 import { db } from '$lib/server/database';
 import { CookieJar } from '../access/cookie-jar';
-import { goodPassword, mailsTo, makePerson, tokenIn } from './fixture';
+import { atOnce, goodPassword, mailsTo, makePerson, tokenIn } from './fixture';
 
 afterAll(() => db.destroy());
 
@@ -83,12 +83,9 @@ describe('a password reset', () => {
     expect(await readSession(cookies)).toBeNull();
   });
 
-  it('works once, also when the link is used twice at the same time', async () => {
+  it('works once, also when the link is used many times at once', async () => {
     const token = await resetToken(await makePerson());
-    const outcomes = await Promise.all([
-      resetPassword(db, token, newPassword),
-      resetPassword(db, token, 'umber willow heron'),
-    ]);
+    const outcomes = await atOnce(() => resetPassword(db, token, newPassword));
     expect(outcomes.filter((outcome) => outcome.ok)).toHaveLength(1);
     expect((await resetPassword(db, token, newPassword)).ok).toBe(false);
   });
