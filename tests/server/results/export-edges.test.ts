@@ -41,4 +41,17 @@ describe('edgesTsv', () => {
     expect(cells[1]!.slice(0, 4)).toEqual(["'=C3", 'P4', '8', '12']);
     expect(cells[2]!.at(-1)).toBe('n/a');
   });
+
+  test('marks the edges whose lag has a simpler explanation than synchrony', () => {
+    const axes = {
+      sites: ['C3', 'P4'],
+      pairs: [[0, 1]] as [number, number][],
+      frequenciesHz: [10],
+      timesS: [0],
+    };
+    const edges = [sampleEdge({ lagARad: 0.05 }), sampleEdge({ lagARad: 0.71 })];
+    const [head, ...rows] = edgesTsv(edges, axes).trimEnd().split('\n');
+    const at = head!.split('\t').indexOf('lag_near_zero');
+    expect(rows.map((row) => row.split('\t')[at])).toEqual(['true', 'false']);
+  });
 });

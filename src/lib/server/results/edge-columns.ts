@@ -1,4 +1,5 @@
 import type { ResultAxes, ResultEdge } from '$lib/model/result';
+import { claimedLagRad, isNearZeroLag, lagMs } from '$lib/result/zero-lag';
 
 export interface EdgeColumn {
   name: string;
@@ -10,8 +11,6 @@ export interface EdgeColumn {
 
 const site = (end: 0 | 1) => (edge: ResultEdge, axes: ResultAxes) =>
   axes.sites[axes.pairs[edge.pair]![end]]!;
-
-const lagMs = (lagRad: number, hz: number) => (lagRad / (2 * Math.PI * hz)) * 1000;
 
 const interval95 = '95 % Clopper-Pearson interval for the Monte Carlo error';
 
@@ -125,6 +124,12 @@ export const edgeColumns: EdgeColumn[] = [
     description: 'lag_b_rad as time at the peak frequency.',
     units: 'ms',
     value: (edge) => lagMs(edge.lagBRad, edge.peakHz),
+  },
+  {
+    name: 'lag_near_zero',
+    description:
+      'true where the lag of the condition with more synchrony lies within 15 degrees of zero or half a turn, as volume conduction and a shared reference make it.',
+    value: (edge) => String(isNearZeroLag(claimedLagRad(edge))),
   },
   {
     name: 'cluster',
