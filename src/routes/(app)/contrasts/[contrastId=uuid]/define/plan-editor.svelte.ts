@@ -9,6 +9,7 @@ import { recordingNames, type StudyRecording } from '$lib/model/study-recording'
 import { Autosave, type SaveTarget } from './autosave.svelte';
 import type { Machine } from './machine.svelte';
 import { screenedEpochs } from './screened';
+import { firstRules } from './first-rules';
 import { goodSites, siteChoices, usedRecordings, type SiteChoice } from './site-choices';
 
 export interface EditorStart extends SaveTarget {
@@ -144,9 +145,7 @@ export class PlanEditor {
   chooseParticipant(code: string, recordings: StudyRecording[]): void {
     this.recordings = recordings;
     this.draft.participant = code;
-    const [first, second = first] = recordings;
-    this.draft.a.rules = first ? [this.#firstRule(first)] : [];
-    this.draft.b.rules = second ? [this.#firstRule(first.events.length > 0 ? first : second)] : [];
+    [this.draft.a.rules, this.draft.b.rules] = firstRules(recordings);
     const kept = this.draft.sites.filter((site) => this.sites.some((each) => each.site === site));
     this.draft.sites = kept.length >= 2 ? kept : goodSites(this.sites);
   }
@@ -170,14 +169,6 @@ export class PlanEditor {
 
   removeRule(condition: 'a' | 'b', index: number): void {
     this.draft[condition].rules.splice(index, 1);
-  }
-
-  #firstRule(recording: StudyRecording): RuleDraft {
-    const kind = recording.events.length > 0 ? 'events' : 'even';
-    return {
-      ...newRule(kind, recording.sha256),
-      toS: String(Math.floor(recording.durationS)),
-    };
   }
 
   #show(text: string | null): void {
