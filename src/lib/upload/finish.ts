@@ -29,8 +29,13 @@ export async function finishUpload(
     const message = 'Your session has ended. Sign in in another tab, then go on here.';
     throw { kind: 'signed-out', message } satisfies TransferProblem;
   }
+  const refusal = (await response
+    .clone()
+    .json()
+    .catch(() => null)) as { code?: string } | null;
+  const isGone = response.status === 404 || refusal?.code === 'unreadable';
   throw {
-    kind: 'refused',
+    kind: isGone ? 'gone' : 'refused',
     message: messageIn(await response.text()),
   } satisfies TransferProblem;
 }

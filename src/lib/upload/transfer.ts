@@ -13,7 +13,11 @@ export interface Transfer {
   onProgress(bytesSent: number): void;
 }
 
-export type TransferProblem = { message: string; kind: 'connection' | 'signed-out' | 'refused' };
+export interface TransferProblem {
+  message: string;
+  /** `gone`: the server holds nothing of it any more; it must be sent anew. */
+  kind: 'connection' | 'signed-out' | 'refused' | 'gone';
+}
 
 export interface RunningTransfer {
   /** The upload's id once all bytes are there; rejects with a TransferProblem. */

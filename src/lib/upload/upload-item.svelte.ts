@@ -58,7 +58,8 @@ export class UploadItem {
 
   /** Its choices can still be changed. */
   get isOpen(): boolean {
-    return this.status === 'ready' || (this.status === 'failed' && this.bytesSent === 0);
+    const isUnsentOrWhole = this.bytesSent === 0 || this.bytesSent === this.size;
+    return this.status === 'ready' || (this.status === 'failed' && isUnsentOrWhole);
   }
 
   get isBusy(): boolean {
@@ -101,8 +102,15 @@ export class UploadItem {
       const { kind, message } = reason as TransferProblem;
       this.problem = message ?? String(reason);
       this.waitsForConnection = kind === 'connection';
+      if (kind === 'gone') await this.startOver();
       this.status = 'failed';
     }
+  }
+
+  private async startOver(): Promise<void> {
+    this.uploadId = null;
+    this.bytesSent = 0;
+    await this.transfer?.forget();
   }
 
   private async sendBytes(): Promise<string> {

@@ -1,11 +1,11 @@
 import { createHash } from 'node:crypto';
-import { mkdtemp, readdir, rm } from 'node:fs/promises';
+import { mkdir, mkdtemp, readdir, rm, utimes, writeFile } from 'node:fs/promises';
 import { tmpdir } from 'node:os';
 import { join } from 'node:path';
 import { Readable } from 'node:stream';
 import { buffer } from 'node:stream/consumers';
 import { afterAll, beforeAll, describe, expect, it } from 'vitest';
-import { fileStorage } from '$lib/server/storage/file-storage';
+import { fileStorage, removeHalfWritten } from '$lib/server/storage/file-storage';
 
 let root: string;
 beforeAll(async () => {
@@ -56,6 +56,17 @@ describe('the file storage', () => {
     );
     expect(await storage.exists('maps/broken')).toBe(false);
     expect(await readdir(join(root, '.incoming'))).toEqual([]);
+  });
+
+  it('clears what a killed server left half-written a day ago, and nothing younger', async () => {
+    const incoming = join(root, '.incoming');
+    await mkdir(incoming, { recursive: true });
+    for (const name of ['old', 'young']) await writeFile(join(incoming, name), 'half');
+    const twoDaysAgo = new Date(Date.now() - 48 * 60 * 60 * 1000);
+    await utimes(join(incoming, 'old'), twoDaysAgo, twoDaysAgo);
+    await removeHalfWritten(root);
+    expect(await readdir(incoming)).toEqual(['young']);
+    await rm(join(incoming, 'young'));
   });
 
   it('removes a key, also one that is not there', async () => {

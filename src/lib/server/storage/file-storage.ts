@@ -1,6 +1,6 @@
 import { createHash, randomUUID } from 'node:crypto';
 import { createReadStream, createWriteStream } from 'node:fs';
-import { mkdir, open, rename, rm, stat } from 'node:fs/promises';
+import { mkdir, open, readdir, rename, rm, stat } from 'node:fs/promises';
 import { dirname, join } from 'node:path';
 import { Readable, Transform } from 'node:stream';
 import { pipeline } from 'node:stream/promises';
@@ -74,6 +74,16 @@ export function fileStorage(root: string): Storage {
       ),
     remove: (key) => rm(pathOf(key), { force: true }),
   };
+}
+
+/** Removes what a server that was killed in the middle of a write left behind over a day ago. */
+export async function removeHalfWritten(root: string, now = Date.now()): Promise<void> {
+  const folder = join(root, '.incoming');
+  const names = await readdir(folder).catch(() => []);
+  for (const name of names) {
+    const { mtimeMs } = await stat(join(folder, name));
+    if (now - mtimeMs > 24 * 60 * 60 * 1000) await rm(join(folder, name), { force: true });
+  }
 }
 
 async function writeHashed(path: string, bytes: Readable | Uint8Array) {

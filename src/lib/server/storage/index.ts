@@ -1,7 +1,7 @@
 import { join } from 'node:path';
 import type { Readable } from 'node:stream';
 import { config } from '../config';
-import { fileStorage } from './file-storage';
+import { fileStorage, removeHalfWritten } from './file-storage';
 
 /**
  * Where large bytes live (recordings, maps). Keys are paths like `recordings/ab/abcdef...`;
@@ -19,5 +19,9 @@ export interface Storage {
   remove(key: string): Promise<void>;
 }
 
+const root = join(config.dataDir, 'storage');
+
 /** The application's storage. Scripts outside the server make their own with `fileStorage`. */
-export const storage: Storage = fileStorage(join(config.dataDir, 'storage'));
+export const storage: Storage = fileStorage(root);
+
+export const cleanStorage = (): Promise<void> => removeHalfWritten(root);
