@@ -1,4 +1,6 @@
 const longestDetail = 60;
+// The database keeps no order of a detail's values; these come first, the others after them.
+const leading = ['name', 'email', 'from', 'to'];
 
 /** "recording.uploaded" as "Recording uploaded": actions are named so that this reads well. */
 export function actionWords(action: string): string {
@@ -10,8 +12,14 @@ export function actionWords(action: string): string {
 export function detailWords(detail: Record<string, unknown>): string {
   return Object.entries(detail)
     .filter(([, value]) => ['string', 'number', 'boolean'].includes(typeof value))
+    .sort(([x], [y]) => rank(x) - rank(y))
     .map(([name, value]) => `${splitWords(name)} ${shorten(String(value))}`)
     .join(', ');
+}
+
+function rank(name: string): number {
+  const place = leading.indexOf(name);
+  return place < 0 ? leading.length : place;
 }
 
 /** "sizeBytes" as "size bytes". */
