@@ -19,7 +19,9 @@ export function binValues(values: ArrayLike<number>, aboutBins = 30): Bin[] {
     if (value > high) high = value;
   }
   if (low > high) return [];
-  const width = roundStep((high - low || Math.abs(high) || 1) / aboutBins);
+  // A spread below what doubles tell apart at this size would make edges that coincide.
+  const spread = Math.max(high - low, 1e-9 * Math.max(Math.abs(low), Math.abs(high)), 1e-12);
+  const width = roundStep(spread / aboutBins);
   const first = Math.floor(low / width);
   const count = Math.max(1, Math.floor(high / width) - first + 1);
   const bins = Array.from({ length: count }, (_, i) => ({
@@ -28,7 +30,9 @@ export function binValues(values: ArrayLike<number>, aboutBins = 30): Bin[] {
     count: 0,
   }));
   for (let i = 0; i < values.length; i++) {
-    const bin = bins[Math.min(count - 1, Math.floor(values[i]! / width) - first)];
+    if (!Number.isFinite(values[i]!)) continue;
+    const index = Math.floor(values[i]! / width) - first;
+    const bin = bins[Math.max(0, Math.min(count - 1, index))];
     if (bin) bin.count += 1;
   }
   return bins;
