@@ -94,7 +94,7 @@ test('a recording becomes significant edges that the team can see', async ({ pag
   await page.getByRole('link', { name: 'Go to Run' }).click();
 
   await page.getByRole('button', { name: 'Start the run' }).click();
-  await page.getByRole('link', { name: /result/i }).last().click({ timeout: 120_000 });
+  await page.getByRole('link', { name: 'See the result' }).click({ timeout: 120_000 });
   await page.waitForURL('**/result**');
   const contrastId = /contrasts\/([0-9a-f-]{36})/.exec(page.url())?.[1] ?? '';
 
