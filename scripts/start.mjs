@@ -25,6 +25,9 @@ async function end(code) {
 process.on('SIGINT', () => void end(0));
 process.on('SIGTERM', () => void end(0));
 process.on('SIGHUP', () => void end(0));
+// npm's shell does not pass a signal on that is sent to npm alone; it only goes away.
+const npm = process.ppid;
+setInterval(() => process.ppid !== npm && void end(0), 500).unref();
 
 async function main() {
   const host = process.env.HOST ?? '127.0.0.1';

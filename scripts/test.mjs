@@ -7,7 +7,7 @@ import { mkdirSync, rmSync } from 'node:fs';
 import path from 'node:path';
 import { ensureDatabase } from './lib/database.mjs';
 import { ensureDebian, needs } from './lib/debian.mjs';
-import { applicationEnv, dataDir } from './lib/environment.mjs';
+import { applicationEnv } from './lib/environment.mjs';
 import { ensurePackages } from './lib/packages.mjs';
 import { freePort } from './lib/ports.mjs';
 import { startPostgres } from './lib/postgres.mjs';

@@ -67,10 +67,10 @@ export function ensureBuild() {
 }
 
 /** Starts the built application and resolves once it answers its health check. */
-export async function serve(env, { quiet = false } = {}) {
-  const child = spawn(process.execPath, ['build/index.js'], {
+export async function serve(env) {
+  const child = spawn(process.execPath, ['scripts/lib/application.mjs'], {
     cwd: root,
-    stdio: ['ignore', quiet ? 'ignore' : 'inherit', 'inherit'],
+    stdio: ['ignore', 'inherit', 'inherit', 'ipc'],
     // Its own process group: Ctrl+C reaches the script alone, which ends both servers in order.
     detached: true,
     env: { ...process.env, ...env },

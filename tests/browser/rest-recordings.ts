@@ -20,7 +20,12 @@ export function restRecordings(): RestRecordings {
   const bytes = (file: string) => new Uint8Array(readFileSync(file));
   if (folder) {
     const file = (name: string) => path.join(folder, name);
-    return { closed: file('eyes-closed.edf'), open: file('eyes-open.edf'), simulated: false, bytes };
+    return {
+      closed: file('eyes-closed.edf'),
+      open: file('eyes-open.edf'),
+      simulated: false,
+      bytes,
+    };
   }
   console.log('RECORDINGS_DIR is unset: the path is walked with simulated recordings');
   const made = mkdtempSync(path.join(tmpdir(), 'nullwright-rest-'));

@@ -112,9 +112,17 @@ test('a recording becomes significant edges that the team can see', async ({ pag
     expect(edge.epochs_b).toBe(55);
   }
   const { site_j, site_k } = nearAlpha[0];
-  await expect(page.getByRole('row').filter({ hasText: `${site_j} – ${site_k}` }).first()).toBeVisible();
+  await expect(
+    page
+      .getByRole('row')
+      .filter({ hasText: `${site_j} – ${site_k}` })
+      .first(),
+  ).toBeVisible();
 
-  await viewerReadsOnly(await browser.newContext().then((context) => context.newPage()), contrastId);
+  await viewerReadsOnly(
+    await browser.newContext().then((context) => context.newPage()),
+    contrastId,
+  );
 });
 
 interface EdgeRow {
@@ -148,7 +156,7 @@ async function edgesInDatabase(contrastId: string): Promise<EdgeRow[]> {
 async function viewerReadsOnly(page: Page, contrastId: string) {
   await signInAs(page, 'viewer');
   await page.goto(`/contrasts/${contrastId}/result`);
-  await expect(page.getByRole('heading', { name: 'Edges' })).toBeVisible();
+  await expect(page.getByRole('heading', { name: 'Edges', exact: true })).toBeVisible();
   await page.goto(`/contrasts/${contrastId}/define`);
   await expect(page.getByRole('heading', { name: 'Closed against open' })).toBeVisible();
   await expect(page.getByRole('button', { name: 'Change it in a new version' })).toHaveCount(0);
