@@ -20,7 +20,8 @@ export function binValues(values: ArrayLike<number>, aboutBins = 30): Bin[] {
   }
   if (low > high) return [];
   // A spread below what doubles tell apart at this size would make edges that coincide.
-  const spread = Math.max(high - low, 1e-9 * Math.max(Math.abs(low), Math.abs(high)), 1e-12);
+  const size = Math.max(Math.abs(low), Math.abs(high));
+  const spread = Math.max(high > low ? high - low : size || 1, 1e-9 * size, 1e-12);
   const width = roundStep(spread / aboutBins);
   const first = Math.floor(low / width);
   const count = Math.max(1, Math.floor(high / width) - first + 1);
