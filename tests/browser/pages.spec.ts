@@ -38,7 +38,6 @@ const pages: PageToSee[] = [
     path: () => '/invitation/not-a-token-that-was-ever-sent',
     heading: /invitation|link/i,
     signedOut: true,
-    refused: true,
   },
   { name: 'methods', path: () => '/methods', heading: 'Methods', signedOut: true },
   { name: 'kept mails', path: () => '/mail', heading: /mail/i },
