@@ -18,8 +18,8 @@ import { finishedPlan, readyPlan } from './plans';
 import { rateHz, simulate, sites, type Participant } from './simulate';
 
 const participants: Participant[] = [
-  { code: 'P01', seed: 'tidewater/P01', couplingUv: 14 },
-  { code: 'P02', seed: 'tidewater/P02', couplingUv: 16 },
+  { code: 'P01', seed: 'tidewater/P01', couplingUv: 6.5 },
+  { code: 'P02', seed: 'tidewater/P02', couplingUv: 7 },
   // Nothing is planted here: a contrast of this participant should find nothing.
   { code: 'P03', seed: 'tidewater/P03', couplingUv: 0 },
 ];

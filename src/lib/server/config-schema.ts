@@ -15,11 +15,7 @@ const schema = z.object({
     .regex(/^smtps?:\/\//, 'must begin with smtp:// or smtps://')
     .optional(),
   MAIL_FROM: z.string().min(3).default('Nullwright <nullwright@localhost>'),
-  UPLOAD_LIMIT_BYTES: z.coerce
-    .number()
-    .int()
-    .positive()
-    .default(2_000_000_000),
+  UPLOAD_LIMIT_BYTES: z.coerce.number().int().positive().default(2_000_000_000),
   LOG_LEVEL: z.enum(['trace', 'debug', 'info', 'warn', 'error', 'silent']).default('info'),
 });
 

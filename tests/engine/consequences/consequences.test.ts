@@ -74,6 +74,7 @@ describe('consequencesOf', () => {
     ['few-permutations', { test: testWith({ permutations: 19, alpha: 0.01 }) }],
     ['few-permutations', { test: testWith({ corrections: ['benjamini-hochberg'] }) }],
     ['coarse-p', { test: testWith({ permutations: 199 }) }],
+    ['few-for-maxima', { test: testWith({ permutations: 499 }) }],
     ['few-arrangements', {}, inOrder('ABABAB')],
     ['few-epochs', {}, inOrder('ABABABAB')],
     ['unequal-epochs', {}, inOrder('AAB'.repeat(20))],

@@ -11,6 +11,7 @@ export type CautionCode =
   | 'few-permutations'
   | 'few-arrangements'
   | 'coarse-p'
+  | 'few-for-maxima'
   | 'few-epochs'
   | 'epochs-lost'
   | 'unequal-epochs'

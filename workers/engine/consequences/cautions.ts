@@ -12,6 +12,7 @@ const rules: CautionRule[] = [
   test.windowTooLong,
   test.fewPermutations,
   test.fewArrangements,
+  test.fewForMaxima,
   epochs.fewEpochs,
   epochs.epochsLost,
   epochs.unequalEpochs,

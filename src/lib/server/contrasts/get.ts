@@ -62,7 +62,7 @@ export async function getContrast(
     .where('plan.contrastId', '=', contrastId)
     .orderBy('plan.version')
     .execute();
-  return { ...contrast, simulated: contrast.simulated || member.teamSimulated, plans };
+  return { ...contrast, plans };
 }
 
 export type PlanBody =

@@ -103,7 +103,7 @@ export async function findFinishedRun(db: Db, member: Member, runId: string): Pr
       id: row.contrastId,
       name: row.contrastName,
       studyId: row.studyId,
-      simulated: row.simulated || member.teamSimulated,
+      simulated: row.simulated,
     },
   };
 }
