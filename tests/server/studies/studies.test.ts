@@ -144,14 +144,11 @@ describe('a study’s contrasts', () => {
       .values({
         teamId: lab.member.teamId,
         planId,
-        state: 'finished',
+        state: 'running',
         seed: 's',
         engineVersion: '1',
         workerCount: 1,
-        progress: 1,
-        digest: '1'.repeat(64),
         startedBy: lab.member.personId,
-        finishedAt: new Date(),
       })
       .returning('id')
       .executeTakeFirstOrThrow();
@@ -191,6 +188,12 @@ describe('a study’s contrasts', () => {
         edge(1, 'max-statistic', 0.004),
         edge(2, 'benjamini-hochberg', 0.0005),
       ])
+      .execute();
+    // A finished run takes no further edges, so it is finished last.
+    await db
+      .updateTable('run')
+      .set({ state: 'finished', progress: 1, digest: '1'.repeat(64), finishedAt: new Date() })
+      .where('id', '=', runId)
       .execute();
     const [done] = await studyContrasts(db, lab.member.teamId, lab.studyId);
     expect(done).toMatchObject({
