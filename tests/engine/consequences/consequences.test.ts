@@ -170,4 +170,16 @@ describe('consequencesOf', () => {
     const [first, second] = [recordings[0], secondRecording([], { channels })];
     expect(codes(change, [first, second])).toContain('too-much-memory');
   });
+
+  test('stops a plan whose draws do not fit into memory, and only that', () => {
+    // 100,000 permutations of 3 sites and 4000 epochs in 2 bytes are 2.4 GB; labels take 57 MB.
+    const recordings = inOrder('AB'.repeat(2000));
+    const change = { null: 'trial-order', test: testWith({ permutations: 100_000 }) } as const;
+    const found = consequencesOf(samplePlan(change), recordings);
+    expect(found.drawBytes).toBe(100_000 * 3 * 4000 * 2);
+    const caution = found.cautions.find(({ code }) => code === 'too-much-memory');
+    expect(caution).toMatchObject({ severity: 'stop' });
+    expect(caution!.message).toMatch(/draws would take 2.2 GB.*fewer permutations/);
+    expect(codes({ ...change, null: 'labels' }, recordings)).not.toContain('too-much-memory');
+  });
 });

@@ -2,7 +2,8 @@ import { buffer } from 'node:stream/consumers';
 import { afterAll, beforeAll, describe, expect, it } from 'vitest';
 import { parseNpy } from '$lib/model/npy';
 import { sentMapNames } from '$lib/model/run-maps';
-import { openMap, openSlices } from '$lib/server/runs';
+import { openMap, openSlices, storeResult } from '$lib/server/runs';
+import type { Storage } from '$lib/server/storage';
 import type { HeadlessResult } from '$workers/headless';
 import { makeMember, openDatabase } from '../contrasts/fixture';
 import { openRunLab, type RunLab } from './laboratory';
@@ -154,7 +155,45 @@ describe('a result that was tampered with', () => {
   });
 });
 
+describe('a map that is replaced while its result is checked', () => {
+  it('is refused, and never lies under the hash of the map that was checked', async () => {
+    const id = await lab.begin();
+    const result = copy();
+    result.maps.nullMean[0]! += 0.125;
+    // After the last map is read, and before the maps are kept.
+    const storage: Storage = {
+      ...lab.storage,
+      async read(key, offset, length) {
+        const bytes = await lab.storage.read(key, offset, length);
+        if (key === `staging/${id}/lower.npy` && offset > 0) {
+          const name = `staging/${id}/null-mean.npy`;
+          const other = await lab.storage.read(name, 0, await lab.storage.size(name));
+          other[other.length - 1]! ^= 1;
+          await lab.storage.put(name, other);
+        }
+        return bytes;
+      },
+    };
+    await expect(
+      storeResult(db, storage, lab.member, id, result, result.summary),
+    ).rejects.toMatchObject({ name: 'ResultRefused', code: 'map-changed' });
+    expect((await runRow(id)).state).toBe('failed');
+    // The map that was checked can still be kept, by its own bytes.
+    await lab.store(id, result);
+    const kept = await openMap(db, lab.storage, lab.member.teamId, id, 'null-mean');
+    const file = parseNpy(new Uint8Array(await buffer(kept.bytes)));
+    expect(file.data).toEqual(result.maps.nullMean);
+  });
+});
+
 describe('a finished run', () => {
+  it('is stored once when two results arrive together', async () => {
+    const id = await lab.begin();
+    const outcomes = await Promise.allSettled([lab.store(id), lab.store(id)]);
+    expect(outcomes.map(({ status }) => status).sort()).toEqual(['fulfilled', 'rejected']);
+    expect(await runRow(id)).toMatchObject({ state: 'finished', failure: null });
+  });
+
   it('takes no second result', async () => {
     const id = await lab.begin();
     await lab.store(id);

@@ -55,6 +55,7 @@ export interface CautionInput {
     chance: { a: number | null; b: number | null };
     kernels: KernelWidth[];
     phaseBytes: number;
+    drawBytes: number;
   };
 }
 

@@ -46,6 +46,8 @@ export interface Consequences {
   guardS: number;
   /** Memory for the phases of all epochs, shared by the workers, bytes. */
   phaseBytes: number;
+  /** Memory for the draws of all permutations, shared likewise, bytes. */
+  drawBytes: number;
   cautions: Caution[];
 }
 
@@ -102,6 +104,7 @@ export function consequencesOf(
     kernels,
     guardS: Math.max(...kernels.map((kernel) => kernel.halfLength)) / axes.samplingRateHz,
     phaseBytes: phaseLayout(axes, epochs.length, window, keepsWholeWindow(plan)).byteLength,
+    drawBytes: model.drawsByteLength(shape),
   };
   return { ...facts, cautions: cautionsOf({ plan, recordings, axes, epochs, window, facts }) };
 }

@@ -2,18 +2,23 @@ import { listed } from '../prepare/recordings';
 import { said, widestKernel, type CautionRule } from './caution';
 
 /** A browser tab's shared buffer much above this fails on common laptops. Common practice, no source. */
-export const mostPhaseBytes = 2 ** 31;
+const mostSharedBytes = 2 ** 31;
 /** Sites from which their mean comes near a neutral reference. Common practice, no source. */
 const wantedForAverage = 20;
 const mainsHz = [50, 60];
 
 export const tooMuchMemory: CautionRule = ({ facts }) => {
-  if (facts.phaseBytes <= mostPhaseBytes) return null;
-  const gigabytes = (bytes: number) => (bytes / 2 ** 30).toFixed(1);
+  const { phaseBytes, drawBytes } = facts;
+  if (Math.max(phaseBytes, drawBytes) <= mostSharedBytes) return null;
+  const gigabytes = (bytes: number) => `${(bytes / 2 ** 30).toFixed(1)} GB`;
+  const [what, less] =
+    phaseBytes >= drawBytes
+      ? ['phases', 'fewer sites, frequencies, times or epochs']
+      : ["permutations' draws", 'fewer permutations, sites or epochs'];
   return {
     code: 'too-much-memory',
     severity: 'stop',
-    message: `The phases would take ${gigabytes(facts.phaseBytes)} GB, and ${gigabytes(mostPhaseBytes)} GB are the most: take fewer sites, frequencies, times or epochs.`,
+    message: `The ${what} would take ${gigabytes(Math.max(phaseBytes, drawBytes))}, and ${gigabytes(mostSharedBytes)} are the most: take ${less}.`,
   };
 };
 

@@ -4,6 +4,7 @@ import { error } from '@sveltejs/kit';
 import { bytesPerElement, npyHeader, npyHeaderLimit, parseNpyHeader } from '$lib/model/npy';
 import type { Db } from '../database';
 import type { Storage } from '../storage';
+import { ResultRefused } from './refused';
 
 export interface KeptMap {
   name: string;
@@ -16,20 +17,30 @@ export interface KeptMap {
 
 /**
  * Puts an NPY file under the key of its hash, where equal maps of another run may lie already.
- * `open` is called twice: to hash, so that the key is known, and to write.
+ * Bytes that do not have this hash (a map replaced since it was checked) are refused, and never
+ * lie under the key.
  */
 export async function keepByHash(
   storage: Storage,
+  sha256: string,
   open: () => Readable,
 ): Promise<Pick<KeptMap, 'storageKey' | 'sha256' | 'sizeBytes'>> {
-  const hash = createHash('sha256');
-  for await (const chunk of open()) hash.update(chunk as Uint8Array);
-  const sha256 = hash.digest('hex');
   const storageKey = `maps/${sha256.slice(0, 2)}/${sha256}.npy`;
   const kept = (await storage.exists(storageKey))
     ? { sizeBytes: await storage.size(storageKey) }
-    : await storage.put(storageKey, open());
+    : await storage.put(storageKey, Readable.from(ofHash(sha256, open())));
   return { storageKey, sha256, sizeBytes: kept.sizeBytes };
+}
+
+async function* ofHash(sha256: string, bytes: Readable): AsyncGenerator<Uint8Array> {
+  const hash = createHash('sha256');
+  for await (const part of bytes as AsyncIterable<Uint8Array>) {
+    hash.update(part);
+    yield part;
+  }
+  if (hash.digest('hex') !== sha256) {
+    throw new ResultRefused('map-changed', 'A map was sent anew while the result was checked.');
+  }
 }
 
 async function findMap(db: Db, teamId: string, runId: string, name: string): Promise<KeptMap> {

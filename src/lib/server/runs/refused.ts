@@ -6,6 +6,7 @@ export type RefusalCode =
   | 'map-missing'
   | 'map-shape'
   | 'map-value'
+  | 'map-changed'
   | 'digest-mismatch';
 
 /** A result that does not fit its plan. The message names what, the value found, and what is due. */

@@ -1,3 +1,4 @@
+import { createHash } from 'node:crypto';
 import { Readable } from 'node:stream';
 import type { Axes } from '$engine';
 import { npyElements, npyHeaderLimit, parseNpyHeader } from '$lib/model/npy';
@@ -92,8 +93,9 @@ function headerOf(name: string, bytes: Uint8Array): NpyHeader {
 }
 
 export interface StagedMap {
-  header: NpyHeader;
   data: NpyArray;
+  /** Of the whole file: what is kept later must be what was read here. */
+  sha256: string;
 }
 
 /** Reads a waiting map whole. Its header was checked on arrival and is checked again. */
@@ -108,10 +110,12 @@ export async function readStaged(
     throw new ResultRefused('map-missing', `Map ${name} has not arrived.`);
   }
   const size = await storage.size(key);
-  const header = headerOf(name, await storage.read(key, 0, Math.min(size, npyHeaderLimit)));
+  const start = await storage.read(key, 0, Math.min(size, npyHeaderLimit));
+  const header = headerOf(name, start);
   check(header);
   const elements = await storage.read(key, header.dataOffset, header.dataLength);
-  return { header, data: npyElements(header, elements) };
+  const hash = createHash('sha256').update(start.subarray(0, header.dataOffset)).update(elements);
+  return { data: npyElements(header, elements), sha256: hash.digest('hex') };
 }
 
 export const openStaged = (storage: Storage, runId: string, name: SentMapName): Readable =>

@@ -1,3 +1,4 @@
+import { createHash } from 'node:crypto';
 import { Readable } from 'node:stream';
 import { conclude, type ClaimMaps, type Outcome, type RunMaps } from '$engine';
 import type { RunSummary } from '$lib/model/run';
@@ -28,6 +29,25 @@ export async function finishRun(
   runId: string,
   summary: RunSummary,
 ): Promise<void> {
+  return inTurn(() => finishInTurn(db, storage, member, runId, summary));
+}
+
+let last: Promise<void> = Promise.resolve();
+
+/** A result takes some hundred megabytes while it is checked: one at a time, whoever sends them. */
+function inTurn(work: () => Promise<void>): Promise<void> {
+  const mine = last.then(work);
+  last = mine.catch(() => undefined);
+  return mine;
+}
+
+async function finishInTurn(
+  db: Db,
+  storage: Storage,
+  member: Member,
+  runId: string,
+  summary: RunSummary,
+): Promise<void> {
   const run = await getRun(db, member.teamId, runId);
   requireStarter(member, run.startedBy);
   if (run.state === 'finished' || run.state === 'stopped') refuseOver(run.state);
@@ -35,9 +55,9 @@ export async function finishRun(
   const expectation = await expectationOf(db, member.teamId, locked);
   try {
     checkSummary(summary, locked, expectation);
-    const maps = await readMaps(storage, runId, summary, locked, expectation);
+    const { maps, sha256s } = await readMaps(storage, runId, summary, locked, expectation);
     const outcome = await concludeAgain(maps, summary, locked, expectation);
-    const kept = await keepMaps(storage, runId, summary, expectation, outcome);
+    const kept = await keepMaps(storage, runId, summary, expectation, outcome, sha256s);
     await writeFinished(db, member, { runId, locked, expectation, summary, outcome, kept });
     await removeStaged(storage, runId, sentMapNames);
   } catch (reason) {
@@ -77,12 +97,15 @@ async function readMaps(
   summary: RunSummary,
   { plan }: LockedPlan,
   { axes }: Expectation,
-): Promise<ClaimMaps> {
+): Promise<{ maps: ClaimMaps; sha256s: Map<SentMapName, string> }> {
+  const sha256s = new Map<SentMapName, string>();
   const exactly = summary.keptA + summary.keptB;
   const read = async <T extends NpyArray>(name: SentMapName): Promise<T> => {
     const check = (header: NpyHeader): void => checkHeader(name, header, axes, { exactly });
+    const { data, sha256 } = await readStaged(storage, runId, name, check);
+    sha256s.set(name, sha256);
     // The header check holds the dtype, so the array is of the type the caller names.
-    return (await readStaged(storage, runId, name, check)).data as T;
+    return data as T;
   };
   const observedA = await read<Float32Array>('observed-a');
   const observedB = await read<Float32Array>('observed-b');
@@ -96,7 +119,7 @@ async function readMaps(
   const { permutations } = plan.test;
   checkHistogram(await read<Uint16Array>('null-histogram'), permutations, axes);
   await read<Uint8Array>('phases');
-  return {
+  const maps = {
     observedA,
     observedB,
     lagA: await read<Float32Array>('lag-a'),
@@ -108,6 +131,7 @@ async function readMaps(
     maxStatistic: Float32Array.from(summary.maxStatistic),
     maxClusterMass: Float32Array.from(summary.clusterMass),
   };
+  return { maps, sha256s };
 }
 
 async function concludeAgain(
@@ -136,12 +160,15 @@ async function keepMaps(
   summary: RunSummary,
   { axes }: Expectation,
   outcome: Outcome,
+  sha256s: Map<SentMapName, string>,
 ): Promise<KeptMap[]> {
   const kept: KeptMap[] = [];
   const epochCount = summary.keptA + summary.keptB;
   for (const name of sentMapNames) {
     const shape = mapShape(name, axes, epochCount);
-    const stored = await keepByHash(storage, () => openStaged(storage, runId, name));
+    const stored = await keepByHash(storage, sha256s.get(name)!, () =>
+      openStaged(storage, runId, name),
+    );
     kept.push({ name, dtype: sentMaps[name].dtype, shape, ...stored });
   }
   const shape = mapShape('z', axes, epochCount);
@@ -154,8 +181,9 @@ async function keepMaps(
   ];
   for (const { name, data } of made) {
     const parts = npyParts(data, shape);
-    const open = (): Readable => Readable.from(parts, { objectMode: false });
-    kept.push({ name, dtype: '<f4', shape, ...(await keepByHash(storage, open)) });
+    const sha256 = createHash('sha256').update(parts[0]).update(parts[1]).digest('hex');
+    const stored = await keepByHash(storage, sha256, () => Readable.from(parts));
+    kept.push({ name, dtype: '<f4', shape, ...stored });
   }
   return kept;
 }
