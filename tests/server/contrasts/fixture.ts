@@ -1,4 +1,5 @@
 import { randomBytes, randomUUID } from 'node:crypto';
+import { sql } from 'kysely';
 import { connect, type Db } from '$lib/server/database/connect';
 import type { Member } from '$lib/server/access';
 import type { Role } from '$lib/model/role';
@@ -125,4 +126,18 @@ export async function makeRecording(
   }));
   if (events.length) await db.insertInto('event').values(events).execute();
   return { id: recording.id, sha256, name };
+}
+
+/** Waits until a session of this database waits for a row, or `work` is done without waiting. */
+export async function waitsForRow(db: Db, work: Promise<unknown>): Promise<boolean> {
+  let done = false;
+  void work.finally(() => (done = true)).catch(() => undefined);
+  for (;;) {
+    const { rows } = await sql`
+      select from pg_stat_activity
+      where datname = current_database() and wait_event_type = 'Lock'
+    `.execute(db);
+    if (rows.length > 0) return true;
+    if (done) return false;
+  }
 }

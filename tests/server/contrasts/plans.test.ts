@@ -13,7 +13,14 @@ import {
   stageFacts,
 } from '$lib/server/contrasts';
 import type { Member } from '$lib/server/access';
-import { makeColleague, makeMember, makeRecording, makeStudy, openDatabase } from './fixture';
+import {
+  makeColleague,
+  makeMember,
+  makeRecording,
+  makeStudy,
+  openDatabase,
+  waitsForRow,
+} from './fixture';
 import { tappingEvents, validDraft } from './valid-draft';
 
 const db = openDatabase();
@@ -119,6 +126,37 @@ describe('saveDraft', () => {
 });
 
 describe('lockPlan', () => {
+  it('does not lock a plan over a recording that is being deleted', async () => {
+    const at = await started();
+    const revision = await save(at, validDraft(at.recording.sha256));
+    const deletion = await db.startTransaction().execute();
+    await deletion.deleteFrom('recording').where('id', '=', at.recording.id).execute();
+    const wanted = { version: 1, revision, reason: '' };
+    const locking = lockPlan(db, at.member, at.contrastId, wanted);
+    const waited = await waitsForRow(db, locking);
+    await deletion.commit().execute();
+    expect(await locking).toMatchObject({ state: 'wrong' });
+    expect(waited).toBe(true);
+  });
+
+  it('lets no events be replaced while a plan that counts on them is locked', async () => {
+    const at = await started();
+    const revision = await save(at, validDraft(at.recording.sha256));
+    const replacing = await db.startTransaction().execute();
+    await replacing
+      .selectFrom('recording')
+      .select('id')
+      .where('id', '=', at.recording.id)
+      .forUpdate()
+      .execute();
+    await replacing.deleteFrom('event').where('recordingId', '=', at.recording.id).execute();
+    const wanted = { version: 1, revision, reason: '' };
+    const locking = lockPlan(db, at.member, at.contrastId, wanted);
+    await waitsForRow(db, locking);
+    await replacing.commit().execute();
+    expect(await locking).toMatchObject({ state: 'wrong' });
+  });
+
   it('stores the plan with its hash, time and person, and records it', async () => {
     const at = await started();
     const locked = await lock(at, validDraft(at.recording.sha256));

@@ -10,7 +10,8 @@ import {
 } from '$lib/server/recordings';
 import { addParticipants, listParticipants, removeParticipant } from '$lib/server/studies';
 import { smallBytes } from '../../engine/read/samples';
-import { openDatabase } from '../contrasts/fixture';
+import { openDatabase, waitsForRow } from '../contrasts/fixture';
+import type { Db } from '$lib/server/database';
 import { openLab, type Lab } from './lab';
 
 const db = openDatabase();
@@ -23,10 +24,10 @@ beforeEach(async () => {
 afterEach(() => lab.close());
 
 /** A locked plan that names this recording, straight into the table. */
-async function lockPlanOn(sha256: string, name: string) {
+async function lockPlanOn(sha256: string, name: string, on: Db = db) {
   const made = await createContrast(db, lab.member, { studyId: lab.studyId, name, question: '?' });
   if (!made.ok) throw new Error(made.message);
-  await db
+  await on
     .updateTable('plan')
     .set({
       body: JSON.stringify({ recordings: [{ sha256, name: 'rest.edf' }] }),
@@ -86,6 +87,22 @@ describe('a stored recording', () => {
       ok: false,
       message: expect.stringContaining('Cued against free'),
     });
+    const detail = await recordingDetail(db, lab.member.teamId, lab.studyId, id);
+    expect(detail.events.map((event) => event.label)).toEqual(['go', 'stöp']);
+  });
+
+  it('keeps its events when a plan is locked while new ones are read', async () => {
+    const { id, sha256 } = await ingested();
+    const locking = await db.startTransaction().execute();
+    // As locking a plan does.
+    await locking.selectFrom('recording').select('id').where('id', '=', id).forShare().execute();
+    const bytes = new TextEncoder().encode('onset\tduration\n1\t0');
+    const events = { name: 'rest_events.tsv', bytes };
+    const attaching = attachSidecars(db, lab.storage, lab.member, id, { events });
+    await waitsForRow(db, attaching);
+    await lockPlanOn(sha256, 'Cued against free', locking);
+    await locking.commit().execute();
+    expect(await attaching).toMatchObject({ ok: false });
     const detail = await recordingDetail(db, lab.member.teamId, lab.studyId, id);
     expect(detail.events.map((event) => event.label)).toEqual(['go', 'stöp']);
   });

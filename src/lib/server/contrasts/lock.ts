@@ -23,6 +23,15 @@ async function planOf(
   studyId: string,
   draft: PlanDraft,
 ): Promise<{ plan: Plan } | { issues: PlanIssue[] }> {
+  // Held until the plan is locked: nobody may delete one of them, move it to another participant
+  // or change its events between the check and the lock.
+  await db
+    .selectFrom('recording')
+    .select('id')
+    .where('teamId', '=', member.teamId)
+    .where('studyId', '=', studyId)
+    .forShare()
+    .execute();
   const recordings = await participantRecordings(db, member, studyId, draft.participant);
   const names = new Map(recordings.map((each) => [each.sha256, each.name]));
   const parsed = draftToPlan(draft, names);

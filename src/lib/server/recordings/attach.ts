@@ -32,15 +32,15 @@ export async function attachSidecars(
 ): Promise<Attached> {
   const sidecars = readSidecars(files);
   const recording = await storedRecording(db, member.teamId, recordingId);
-  if (sidecars.events) {
-    const refused = await eventsAreLocked(db, member.teamId, recording);
-    if (refused) return refused;
-  }
   const described = await describeStored(storage, recording, sidecars);
   const before = sidecars.events ? withoutEventNotices(recording.notices) : recording.notices;
   const notices = newNotices(before, described.notices);
-  await db.transaction().execute(async (trx) => {
-    if (sidecars.events) await replaceEvents(trx, member.teamId, recordingId, described);
+  return db.transaction().execute(async (trx) => {
+    if (sidecars.events) {
+      const refused = await eventsAreLocked(trx, member.teamId, recording);
+      if (refused) return refused;
+      await replaceEvents(trx, member.teamId, recordingId, described);
+    }
     if (sidecars.channels ?? sidecars.electrodes) {
       const parts = { types: !!sidecars.channels, positions: !!sidecars.electrodes };
       await updateChannels(trx, member.teamId, recordingId, described, parts);
@@ -48,8 +48,8 @@ export async function attachSidecars(
     await setNotices(trx, member.teamId, recordingId, [...before, ...notices]);
     const detail = { files: Object.values(files).map((file) => file.name) };
     await record(trx, member, 'recording.sidecars-added', subject(recordingId), detail);
+    return { ok: true, notices: notices.map((notice) => notice.message) };
   });
-  return { ok: true, notices: notices.map((notice) => notice.message) };
 }
 
 /** Gives up an events.tsv: the events are the file's own annotations again. */
@@ -60,17 +60,17 @@ export async function restoreAnnotations(
   recordingId: string,
 ): Promise<Attached> {
   const recording = await storedRecording(db, member.teamId, recordingId);
-  const refused = await eventsAreLocked(db, member.teamId, recording);
-  if (refused) return refused;
   const described = await describeStored(storage, recording, {});
   const before = withoutEventNotices(recording.notices);
   const notices = newNotices(before, described.notices);
-  await db.transaction().execute(async (trx) => {
+  return db.transaction().execute(async (trx) => {
+    const refused = await eventsAreLocked(trx, member.teamId, recording);
+    if (refused) return refused;
     await replaceEvents(trx, member.teamId, recordingId, described);
     await setNotices(trx, member.teamId, recordingId, [...before, ...notices]);
     await record(trx, member, 'recording.annotations-restored', subject(recordingId));
+    return { ok: true, notices: notices.map((notice) => notice.message) };
   });
-  return { ok: true, notices: notices.map((notice) => notice.message) };
 }
 
 const subject = (id: string) => ({ type: 'recording', id });
@@ -87,8 +87,17 @@ async function storedRecording(db: Db, teamId: string, recordingId: string) {
   return recording ?? notFound('recording');
 }
 
-async function eventsAreLocked(db: Db, teamId: string, recording: StoredRecording) {
-  const contrasts = await lockedUse(db, teamId, recording);
+/** Takes the recording's row first: no plan that counts on its events is locked meanwhile. */
+async function eventsAreLocked(trx: Db, teamId: string, recording: StoredRecording) {
+  const held = await trx
+    .selectFrom('recording')
+    .select('id')
+    .where('teamId', '=', teamId)
+    .where('id', '=', recording.id)
+    .forUpdate()
+    .executeTakeFirst();
+  if (!held) notFound('recording');
+  const contrasts = await lockedUse(trx, teamId, recording);
   if (contrasts.length === 0) return null;
   const message =
     `The events of ${recording.name} cannot change: locked plans count on them ` +
