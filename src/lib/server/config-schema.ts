@@ -36,10 +36,10 @@ export interface Config {
 export function readConfig(env: Record<string, string | undefined>): Config {
   const parsed = schema.safeParse(env);
   if (!parsed.success) {
-    const lines = parsed.error.issues.map(
-      (issue) =>
-        `  ${issue.path.join('.')} ${issue.message} (got: ${env[String(issue.path[0])] ?? 'nothing'})`,
-    );
+    const lines = parsed.error.issues.map((issue) => {
+      const name = String(issue.path[0]);
+      return `  ${name} ${issue.message} (got: ${shown(name, env[name])})`;
+    });
     throw new Error(
       `Configuration is wrong:\n${lines.join('\n')}\nSee README.md, "Configuration".`,
     );
@@ -55,4 +55,10 @@ export function readConfig(env: Record<string, string | undefined>): Config {
     uploadLimitBytes: values.UPLOAD_LIMIT_BYTES,
     logLevel: values.LOG_LEVEL,
   };
+}
+
+/** The message goes to logs and screens, and an address may hold a password. */
+function shown(name: string, value: string | undefined): string {
+  if (value === undefined) return 'nothing';
+  return name === 'DATABASE_URL' || name === 'SMTP_URL' ? 'something else' : value;
 }

@@ -42,7 +42,7 @@ describe('a recording’s file', () => {
     expect(body).toEqual(bytes);
     expect(Object.fromEntries(response.headers)).toMatchObject({
       'accept-ranges': 'bytes',
-      'cache-control': 'private',
+      'cache-control': 'private, no-cache',
       'content-length': String(bytes.length),
       'content-disposition': `attachment; filename*=UTF-8''rest%20%221%22%20%C3%BC.edf`,
       etag: `"${sha256}"`,
@@ -68,6 +68,23 @@ describe('a recording’s file', () => {
     const { response } = await get({ Range: `bytes=${bytes.length}-` });
     expect(response.status).toBe(416);
     expect(response.headers.get('content-range')).toBe(`bytes */${bytes.length}`);
+  });
+
+  it('is recorded when it leaves whole, also as a range from its first byte on', async () => {
+    const downloads = async () => {
+      const rows = await db
+        .selectFrom('auditEvent')
+        .select('id')
+        .where('action', '=', 'recording.downloaded')
+        .where('subjectId', '=', id)
+        .execute();
+      return rows.length;
+    };
+    const before = await downloads();
+    await get();
+    await get({ Range: 'bytes=0-' });
+    await get({ Range: 'bytes=0-9' });
+    expect(await downloads()).toBe(before + 2);
   });
 
   it('is not sent again to who has it', async () => {

@@ -1,3 +1,5 @@
+import { gammaln } from 'simple-statistics';
+
 /**
  * The exact interval of a proportion, from the beta distribution.
  * @param hits successes, 0 .. trials
@@ -34,7 +36,7 @@ function regularisedBeta(x: number, a: number, b: number): number {
   if (x <= 0) return 0;
   if (x >= 1) return 1;
   if (x > (a + 1) / (a + b + 2)) return 1 - regularisedBeta(1 - x, b, a);
-  const front = logGamma(a + b) - logGamma(a) - logGamma(b) + a * Math.log(x) + b * Math.log1p(-x);
+  const front = gammaln(a + b) - gammaln(a) - gammaln(b) + a * Math.log(x) + b * Math.log1p(-x);
   return (Math.exp(front) / a) * betaFraction(x, a, b);
 }
 
@@ -60,17 +62,4 @@ function betaFraction(x: number, a: number, b: number): number {
 
 function notZero(value: number, tiny: number): number {
   return Math.abs(value) < tiny ? tiny : value;
-}
-
-/** ln gamma(x), x >= 1: Stirling's series after shifting x above 10. */
-function logGamma(x: number): number {
-  let shift = 0;
-  let at = x;
-  for (; at < 10; at++) shift += Math.log(at);
-  const inverse = 1 / at;
-  const square = inverse * inverse;
-  const series =
-    inverse *
-    (1 / 12 - square * (1 / 360 - square * (1 / 1260 - square * (1 / 1680 - square / 1188))));
-  return (at - 0.5) * Math.log(at) - at + 0.5 * Math.log(2 * Math.PI) + series - shift;
 }

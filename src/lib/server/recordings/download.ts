@@ -22,7 +22,8 @@ export async function downloadRecording(
   const etag = `"${file.sha256}"`;
   const headers = new Headers({
     'Accept-Ranges': 'bytes',
-    'Cache-Control': 'private',
+    // Kept by this browser only, and asked for again each time: who may have it can change.
+    'Cache-Control': 'private, no-cache',
     'Content-Disposition': `attachment; filename*=UTF-8''${encodeURIComponent(file.name)}`,
     'Content-Type': 'application/octet-stream',
     ETag: etag,
@@ -45,7 +46,7 @@ export async function downloadRecording(
   if (request.method === 'HEAD') return new Response(null, { status, headers });
 
   await mustBeStored(storage, file.storageKey);
-  if (range === 'whole') {
+  if (end - start + 1 === file.sizeBytes) {
     const subject = { type: 'recording', id: recordingId };
     await record(db, member, 'recording.downloaded', subject, { name: file.name });
   }
