@@ -138,7 +138,9 @@ describe('an upload', () => {
     const id = idOf(await create(100));
     const other = await openLab(db);
     const colleague = await makeColleague(db, lab.member.teamId, 'researcher');
-    for (const member of [other.member, colleague]) {
+    // Also not the same person's who acts for another team.
+    const elsewhere = { ...lab.member, teamId: other.member.teamId };
+    for (const member of [other.member, colleague, elsewhere]) {
       expect((await call('HEAD', id, { member })).status).toBe(404);
       expect((await patch(id, 0, new Uint8Array(5), { member })).status).toBe(404);
       expect((await call('DELETE', id, { member })).status).toBe(404);
