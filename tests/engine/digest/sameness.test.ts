@@ -124,7 +124,8 @@ describe('the digest', () => {
     const first = await digest({});
     const upper = maps.upper.with(3, maps.upper[3] + 1);
     expect(await digest({ upper })).not.toBe(first);
-    const lower = maps.lower.with(3, maps.lower[3] + 1);
+    const at = maps.lower.findIndex((count) => count < permutations);
+    const lower = maps.lower.with(at, maps.lower[at] + 1);
     expect(await digest({ lower })).not.toBe(first);
     expect(await digest({ maxStatistic: maps.maxStatistic.map((m) => m + 1) })).not.toBe(first);
     expect(await digest({ maxClusterMass: maps.maxClusterMass.map((m) => m + 9) })).not.toBe(first);
