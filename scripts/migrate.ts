@@ -1,6 +1,7 @@
 import { readdir } from 'node:fs/promises';
 import { pathToFileURL } from 'node:url';
-import { type Migration, type MigrationProvider, Migrator } from 'kysely';
+import { type Migration, type MigrationProvider, Migrator, sql } from 'kysely';
+import { readConfig } from '../src/lib/server/config-schema';
 import { connect } from '../src/lib/server/database/connect';
 
 const migrationFolder = new URL('../migrations/', import.meta.url);
@@ -30,9 +31,35 @@ export async function migrateToLatest(databaseUrl: string): Promise<string[]> {
   }
 }
 
-if (process.argv[1] && import.meta.url === pathToFileURL(process.argv[1]).href) {
-  const url = process.env['DATABASE_URL'];
-  if (!url) throw new Error('DATABASE_URL is missing; scripts/start.mjs sets it.');
-  const done = await migrateToLatest(url);
+/** @throws Error naming the server that does not answer, without its password, and the remedy. */
+export async function reach(databaseUrl: string): Promise<void> {
+  const { db } = connect(databaseUrl);
+  try {
+    await sql`select 1`.execute(db);
+  } catch (problem) {
+    const { message, code } = problem as Error & { code?: string };
+    const where = new URL(databaseUrl);
+    throw new Error(
+      `The database ${where.pathname.slice(1)} at ${where.host} cannot be used: ${message || code}. Check DATABASE_URL.`,
+      { cause: problem },
+    );
+  } finally {
+    await db.destroy();
+  }
+}
+
+/** The first step of each start that runs the application's own code: it also checks what is set. */
+async function main(): Promise<void> {
+  const { databaseUrl } = readConfig(process.env);
+  await reach(databaseUrl);
+  const done = await migrateToLatest(databaseUrl);
   console.log(done.length ? `migrated: ${done.join(', ')}` : 'database is up to date');
+}
+
+if (process.argv[1] && import.meta.url === pathToFileURL(process.argv[1]).href) {
+  await main().catch((problem: unknown) => {
+    // What somebody set is theirs to mend; a stack would bury the sentence that says so.
+    console.error(problem instanceof Error ? problem.message : problem);
+    process.exitCode = 1;
+  });
 }

@@ -105,9 +105,13 @@ async function browserTests() {
     DATA_DIR: data,
     PLAYWRIGHT_JSON_OUTPUT_NAME: report,
   });
-  await endServer(application);
+  const ended = await endServer(application);
   application = null;
   const tally = playwrightTally(report);
+  if (!ended) {
+    console.error('The server did not end when it was asked to.');
+    tally.failed += 1;
+  }
   if (!finished && tally.failed === 0) tally.failed = 1;
   add('browser', tally);
 }

@@ -11,7 +11,8 @@ export function runTool(name, args, env = {}) {
     stdio: 'inherit',
     env: { ...process.env, ...env },
   });
-  if (done.status !== 0) throw new Error(`${name} ${args.join(' ')} failed; see above.`);
+  if (done.status !== 0)
+    throw new Error(`${name} ${args.join(' ')} failed; the reason stands above.`);
 }
 
 export function migrate(databaseUrl) {
@@ -96,14 +97,17 @@ async function answers(url, child) {
   throw new Error(`No answer from ${url} within 60 s.`);
 }
 
-/** Asks a server to end, waits for it, and insists after ten seconds. */
+/**
+ * Asks a server to end, waits for it, and insists after ten seconds. Answers whether it ended by
+ * itself.
+ */
 export function endServer(child) {
   return new Promise((resolve) => {
-    if (child.exitCode !== null || child.signalCode !== null) return resolve();
+    if (child.exitCode !== null || child.signalCode !== null) return resolve(true);
     const insist = setTimeout(() => child.kill('SIGKILL'), 10_000);
-    child.once('exit', () => {
+    child.once('exit', (_code, signal) => {
       clearTimeout(insist);
-      resolve();
+      resolve(signal !== 'SIGKILL');
     });
     child.kill('SIGTERM');
   });
