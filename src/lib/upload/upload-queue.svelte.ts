@@ -56,7 +56,7 @@ export class UploadQueue {
       item.size === file.size &&
       item.file.lastModified === file.lastModified;
     if (this.items.some(isSame)) {
-      this.refused.push({ name: file.name, reason: 'is in the list already.' });
+      this.refused.push({ name: file.name, reason: 'It is in the list already.' });
       return;
     }
     this.items.push(new UploadItem(file, this.studyId, this.limitBytes));

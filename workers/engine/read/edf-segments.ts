@@ -109,7 +109,10 @@ async function discontinuous(
   if (segments.length > 1) {
     notices.push({
       code: 'gaps',
-      message: `The recording has ${segments.length - 1} gaps; no epoch crosses one.`,
+      message:
+        segments.length === 2
+          ? 'The recording has a gap; no epoch crosses it.'
+          : `The recording has ${segments.length - 1} gaps; no epoch crosses one.`,
     });
   }
   return segments;

@@ -2,7 +2,7 @@ import type { EventEmitter } from 'node:events';
 import type { ServerInit } from '@sveltejs/kit';
 import { forgetExpiredSessions } from '../accounts/sessions';
 import { config } from '../config';
-import { db } from '../database';
+import { pool } from '../database';
 import { log } from '../log';
 import { cleanStorage } from '../storage';
 import { cleanUploads } from '../uploads';
@@ -19,5 +19,5 @@ export const init: ServerInit = async () => {
 /** Idle connections to the database would keep a server alive that has answered its last request. */
 function endWithServer() {
   const emitter: EventEmitter = process;
-  emitter.once('sveltekit:shutdown', () => void db.destroy());
+  emitter.once('sveltekit:shutdown', () => void pool.end());
 }
