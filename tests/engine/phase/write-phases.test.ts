@@ -56,6 +56,18 @@ describe('writePhases', () => {
 });
 
 describe('phaseBytes', () => {
+  test('keeps each phase to the nearest of 256 steps of a turn', () => {
+    const { byteLength, samplesPerEpoch } = layoutOf(plan, axes, 8);
+    const phasors = new Float32Array(byteLength / 4).fill(1, 0);
+    const steps = [0, 0.4, 0.6, 63.7, 127.6, -0.4, -0.6, -127.4];
+    steps.forEach((step, i) => {
+      phasors[i] = Math.cos((2 * Math.PI * step) / 256);
+      phasors[i + samplesPerEpoch] = Math.sin((2 * Math.PI * step) / 256);
+    });
+    const bytes = phaseBytes(plan, axes, { buffer: phasors.buffer, epochsA: 4, epochsB: 4 });
+    expect([...bytes.subarray(0, steps.length)]).toEqual([0, 0, 1, 64, 128, 0, 255, 129]);
+  });
+
   test('refuses a buffer of another plan', () => {
     const phases = { buffer: new ArrayBuffer(8), epochsA: 4, epochsB: 4 };
     expect(() => phaseBytes(plan, axes, phases)).toThrow('a buffer of 8 bytes where the plan');
