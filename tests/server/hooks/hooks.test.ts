@@ -107,8 +107,8 @@ describe('the hooks', () => {
 });
 
 describe('handleError', () => {
-  const told = (error: unknown, status: number) =>
-    handleError({ error, status, event: eventWith(new CookieJar()), message: 'Internal Error' });
+  const told = (error: unknown, status: number, message = 'Internal Error') =>
+    handleError({ error, status, event: eventWith(new CookieJar()), message });
 
   it('tells a person nothing of an unexpected error but a random id', async () => {
     const problem = new Error('password of the database is hunter2');
@@ -116,6 +116,14 @@ describe('handleError', () => {
     expect(JSON.stringify(first)).not.toContain('hunter2');
     expect(first).toMatchObject({ code: 'unexpected', id: expect.stringMatching(/^[0-9a-f]{8}$/) });
     expect(second).not.toEqual(first);
+  });
+
+  it('blames nobody but the request for what kit refuses, and needs no id for it', async () => {
+    const refused = await told(new Error('Form actions expect'), 415, 'Unsupported Media Type');
+    expect(refused).toEqual({
+      code: 'refused',
+      message: 'The request was refused: Unsupported Media Type.',
+    });
   });
 
   it('calls a page that does not exist not found', async () => {

@@ -3,9 +3,14 @@ import type { HandleServerError } from '@sveltejs/kit';
 import { log } from '../log';
 
 /** What nobody foresaw: the log gets everything, the person a random id to report. */
-export const handleError: HandleServerError = ({ error, event, status }) => {
+export const handleError: HandleServerError = ({ error, event, status, message }) => {
   if (status === 404) {
     return { code: 'not-found', message: 'There is no such page.' };
+  }
+  // What kit itself refuses (wrong content type, too large): the asker's doing, and in the log as
+  // any other request.
+  if (status < 500) {
+    return { code: 'refused', message: `The request was refused: ${message}.` };
   }
   const id = randomUUID().slice(0, 8);
   log.error({
