@@ -25,6 +25,7 @@ export * from './read';
 export { measures, measureIds, measureOf, type MeasureId } from './measure/registry';
 export type { Measure } from './measure/measure';
 export { nullModels, nullModelOf, nullIds, type NullId } from './null/registry';
+export { nullCaution } from './null/caution';
 export type { NullModel } from './null/model';
 export { corrections, correctionOf, correctionIds, type CorrectionId } from './correct/registry';
 export type { ClaimMaps, Correction } from './correct/correction';

@@ -51,7 +51,7 @@ function referenceWords(reference: Plan['epoch']['reference']): string {
   return `mean of ${list(reference.sites)}`;
 }
 
-const tailWords: Record<Plan['test']['tail'], string> = {
+export const tailWords: Record<Plan['test']['tail'], string> = {
   'two-sided': 'two-sided',
   'a-greater': 'more in A',
   'b-greater': 'more in B',

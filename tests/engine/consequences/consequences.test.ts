@@ -63,6 +63,12 @@ describe('consequencesOf', () => {
     expect(codes({ times: { fromS: 0, toS: 0.8, stepS: 0.4 } })).toEqual(['shared-sources']);
   });
 
+  test('nulls without synchrony warn of pairs that are synchronous in both conditions', () => {
+    expect(codes({ null: 'trial-order' })).toContain('synchrony-in-both');
+    expect(codes({ null: 'time-shift' })).toContain('synchrony-in-both');
+    expect(codes({ null: 'labels' })).not.toContain('synchrony-in-both');
+  });
+
   test('a plan without epochs is stopped, and says which condition has none', () => {
     const { cautions, epochs } = consequencesOf(samplePlan(), inOrder('AAAA'));
     expect(epochs).toEqual({ a: 4, b: 0 });

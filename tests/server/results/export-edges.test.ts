@@ -1,5 +1,5 @@
 import { describe, expect, test } from 'vitest';
-import { edgesTsv, tsvCell } from '$lib/server/results/export-edges';
+import { edgesTsv, exportCautions, tsvCell } from '$lib/server/results/export-edges';
 import { sampleEdge } from '../../engine/result/sample-edge';
 
 describe('tsvCell', () => {
@@ -53,5 +53,12 @@ describe('edgesTsv', () => {
     const [head, ...rows] = edgesTsv(edges, axes).trimEnd().split('\n');
     const at = head!.split('\t').indexOf('lag_near_zero');
     expect(rows.map((row) => row.split('\t')[at])).toEqual(['true', 'false']);
+  });
+});
+
+describe('exportCautions', () => {
+  test('a null without synchrony takes its caution along', () => {
+    expect(exportCautions('max-statistic', 'trial-order').join(' ')).toContain('no synchrony');
+    expect(exportCautions('max-statistic', 'labels').join(' ')).not.toContain('no synchrony');
   });
 });

@@ -25,6 +25,7 @@ export type CautionCode =
   | 'reference-analysed'
   | 'bad-site'
   | 'line-frequency'
+  | 'synchrony-in-both'
   | 'cluster-claim'
   | 'false-discovery-dependence';
 

@@ -13,6 +13,7 @@ const rules: CautionRule[] = [
   test.fewPermutations,
   test.fewArrangements,
   test.fewForMaxima,
+  test.synchronyInBoth,
   epochs.fewEpochs,
   epochs.epochsLost,
   epochs.unequalEpochs,

@@ -1,4 +1,5 @@
 import { correctionOf } from '../correct/registry';
+import { nullCaution } from '../null/caution';
 import { nullModelOf } from '../null/registry';
 import { said, widestKernel, type CautionRule } from './caution';
 import { togetherForFalseDiscovery } from './reach';
@@ -80,6 +81,11 @@ export const fewForMaxima: CautionRule = ({ plan }) => {
     severity: 'attention',
     message: `With ${said(permutations)} permutations the family-wise error runs above alpha: the z of the null come from few surrogates. Ask for ${said(enoughForMaxima)} or more.`,
   };
+};
+
+export const synchronyInBoth: CautionRule = ({ plan }) => {
+  const message = nullCaution(plan.null);
+  return message === null ? null : { code: 'synchrony-in-both', severity: 'attention', message };
 };
 
 export const windowTooLong: CautionRule = ({ plan, window }) => {

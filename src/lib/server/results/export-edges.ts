@@ -1,4 +1,4 @@
-import { correctionOf, type CorrectionId } from '$engine';
+import { correctionOf, nullCaution, type CorrectionId, type NullId } from '$engine';
 import type { ResultAxes, ResultEdge } from '$lib/model/result';
 import type { FoundRun } from './find-run';
 import { edgeColumns } from './edge-columns';
@@ -25,10 +25,12 @@ export function edgesTsv(edges: readonly ResultEdge[], axes: ResultAxes): string
 }
 
 /** What must be known of a claim wherever its numbers go. */
-export function exportCautions(correction: CorrectionId): string[] {
+export function exportCautions(correction: CorrectionId, nullId: NullId): string[] {
+  const ofNull = nullCaution(nullId);
   const { sentence, caution } = correctionOf(correction);
   return [
     caution ?? sentence,
+    ...(ofNull === null ? [] : [ofNull]),
     'Sites can share sources and a reference (volume conduction): edges with a preferred lag near zero or half a turn have a simpler explanation than synchrony.',
     'For research. Not a medical device, and no basis for a diagnosis; local ethics and data rules apply.',
   ];
@@ -67,7 +69,7 @@ export function edgesJson(found: FoundRun, correction: CorrectionId, edgeCount: 
     Digest: run.digest,
     FinishedAt: run.finishedAt.toISOString(),
     MissingValue: 'n/a',
-    Cautions: exportCautions(correction),
+    Cautions: exportCautions(correction, plan.body.null),
     Columns: Object.fromEntries(columns),
   };
 }
