@@ -89,3 +89,16 @@ for (const colorScheme of ['light', 'dark'] as const) {
     expect((await new AxeBuilder({ page }).analyze()).violations).toEqual([]);
   });
 }
+
+test('the roses state the ISPC and the lag that the chosen edge has in the table', async ({
+  page,
+}) => {
+  await open(page);
+  const row = page.locator('section[aria-labelledby="edges"] tbody tr').first();
+  await row.click();
+  const roses = page.locator('section[aria-labelledby="phases"] figcaption');
+  // Site pair, band, time, then ISPC A and B.
+  const ofTable = (column: number) => row.locator('td, th').nth(column).innerText();
+  await expect(roses.nth(0)).toContainText(`: ${(await ofTable(3)).trim()}`);
+  await expect(roses.nth(1)).toContainText(`: ${(await ofTable(4)).trim()}`);
+});

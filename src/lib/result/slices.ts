@@ -6,6 +6,9 @@ export interface PairSlices {
   adjustedP: Float32Array;
   observedA: Float32Array;
   observedB: Float32Array;
+  /** Preferred lags, radians. */
+  lagA: Float32Array;
+  lagB: Float32Array;
   nullMean: Float32Array;
   nullSd: Float32Array;
   upper: Uint32Array;
@@ -40,23 +43,38 @@ export async function fetchPair(
   signal: AbortSignal,
 ): Promise<PairSlices> {
   const get = (name: string) => slice(`/api/runs/${runId}/maps/${name}?pair=${pair}`, signal);
-  const [z, adjustedP, observedA, observedB, nullMean, nullSd, upper, lower, histogram] =
-    await Promise.all([
-      get('z'),
-      get(`adjusted-p-${correction}`),
-      get('observed-a'),
-      get('observed-b'),
-      get('null-mean'),
-      get('null-sd'),
-      get('upper'),
-      get('lower'),
-      get('null-histogram'),
-    ]);
+  const [
+    z,
+    adjustedP,
+    observedA,
+    observedB,
+    lagA,
+    lagB,
+    nullMean,
+    nullSd,
+    upper,
+    lower,
+    histogram,
+  ] = await Promise.all([
+    get('z'),
+    get(`adjusted-p-${correction}`),
+    get('observed-a'),
+    get('observed-b'),
+    get('lag-a'),
+    get('lag-b'),
+    get('null-mean'),
+    get('null-sd'),
+    get('upper'),
+    get('lower'),
+    get('null-histogram'),
+  ]);
   return {
     z: z as Float32Array,
     adjustedP: adjustedP as Float32Array,
     observedA: observedA as Float32Array,
     observedB: observedB as Float32Array,
+    lagA: lagA as Float32Array,
+    lagB: lagB as Float32Array,
     nullMean: nullMean as Float32Array,
     nullSd: nullSd as Float32Array,
     upper: upper as Uint32Array,
