@@ -2,6 +2,7 @@ import { spawn, spawnSync } from 'node:child_process';
 import { createHash } from 'node:crypto';
 import { existsSync, readdirSync, readFileSync, statSync, writeFileSync } from 'node:fs';
 import path from 'node:path';
+import { ensureKernels } from './kernels.mjs';
 import { root } from './root.mjs';
 
 /** Runs a program of the project's packages to its end; throws when it fails. */
@@ -33,7 +34,7 @@ const sources = [
   'src',
   'static',
   'workers',
-  'scripts/kernels',
+  'scripts/lib/kernels.mjs',
   'package-lock.json',
   'svelte.config.js',
   'vite.config.ts',
@@ -59,6 +60,7 @@ function sourceHash() {
 
 /** Builds the application unless the last build came from the same sources. */
 export function ensureBuild() {
+  ensureKernels();
   const stamp = path.join(root, 'build', '.source-hash');
   const wanted = sourceHash();
   if (existsSync(stamp) && readFileSync(stamp, 'utf8') === wanted) return;

@@ -12,6 +12,7 @@ export const ispc: Measure<'ispc'> = {
   source: 'Lachaux et al. 1999',
   range: [0, 1],
   termCount: 2,
+  isResultantLength: true,
   sumTerms: sumCrossTerms,
   addShiftedTerms: addShiftedCrossTerms,
   values: resultantLengths,

@@ -39,6 +39,11 @@ export interface Measure<Id extends string = string> {
   /** 1 to 8. */
   termCount: number;
   /**
+   * Set where the measure is the resultant length |sum u_j u_k*| / N: the kernels made for that may
+   * then stand in for the three functions below. Others leave it out and lose nothing but speed.
+   */
+  isResultantLength?: true;
+  /**
    * Overwrites `sums[feature * termCount + term]` with the sums over epochs. `jStarts[n]` and
    * `kStarts[n]`, where the stretches' real parts begin, need not be of the same epoch: that is
    * how trials are shuffled.

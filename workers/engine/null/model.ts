@@ -1,3 +1,4 @@
+import type { Arrays, ArrayPlan, Kernels } from '../../kernels/kernels';
 import type { Measure } from '../measure/measure';
 import type { PhaseLayout } from '../phase/layout';
 
@@ -48,6 +49,27 @@ export interface PairSampler {
 }
 
 /**
+ * Makes surrogates for eight neighbouring features at a time, the group that kernels work on.
+ * It owns its arrays: not re-entrant.
+ */
+export interface GroupSampler {
+  begin(j: number, k: number): void;
+  /**
+   * Writes surrogates of features `8 * group ..`, `[permutation - range.from][8]`, as `PairSampler`
+   * says of `first` and `second`. Beyond the last feature a group repeats it. Ranges are those that
+   * `GroupSource` was told of.
+   */
+  fill(group: number, range: PermutationRange, first: Float32Array, second: Float32Array): void;
+}
+
+/** A group sampler to be: it says which arrays it needs, and is made once they are there. */
+export interface GroupSource {
+  /** For ranges of at most `rows` permutations. */
+  arrays(rows: number): ArrayPlan;
+  sampler(kernels: Kernels, arrays: Arrays<ArrayPlan>): GroupSampler;
+}
+
+/**
  * A null model: what is shuffled, how it is drawn, and what it makes of a pair. Permutation p is
  * drawn from its own generator, so any range may be drawn by anyone, in any order.
  * Adding one is a file and a line in null/registry.ts.
@@ -80,5 +102,8 @@ export interface NullModel<Id extends string = string> {
   drawsByteLength(shape: DrawShape): number;
   /** Writes the draws of a range of permutations; touches no other bytes. */
   draw(seed: string, range: PermutationRange, draws: ArrayBufferLike, shape: DrawShape): void;
+  /** The definition in f64: what a faster way is held against, and what runs where there is none. */
   sampler(run: RunInput): PairSampler;
+  /** A faster way by the compiled kernels; null where the run's measure has none. */
+  groups?(run: RunInput): GroupSource | null;
 }
