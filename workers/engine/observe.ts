@@ -35,6 +35,7 @@ export function observer(run: RunInput): Observer {
       const rows = { epochCount, sampleCount: featureCount, partDistance: featureCount };
       measure.sumTerms(phasors, starts, partnerStarts, sums, rows);
       measure.values(sums, epochCount, out.value, featureCount);
+      if (measure.needsAmplitude) toUnitLength(phasors, featureCount);
       sumCrossTerms(phasors, starts, partnerStarts, cross, rows);
       for (let x = 0; x < featureCount; x++) {
         out.lagRad[x] = Math.atan2(cross[2 * x + 1], cross[2 * x]);
@@ -58,5 +59,17 @@ function copyKept(
   for (let row = 0; row < 2 * layout.frequencyCount; row++) {
     const first = from + row * samplesPerFrequency;
     for (const sample of keptSamples) out[at++] = phasors[first + sample];
+  }
+}
+
+/** The preferred lag is that of the mean unit vector, whatever the measure weights by. */
+function toUnitLength(phasors: Float32Array, featureCount: number): void {
+  for (let row = 0; row < phasors.length; row += 2 * featureCount) {
+    for (let at = row; at < row + featureCount; at++) {
+      const size = Math.hypot(phasors[at], phasors[at + featureCount]);
+      if (size === 0) continue;
+      phasors[at] /= size;
+      phasors[at + featureCount] /= size;
+    }
   }
 }

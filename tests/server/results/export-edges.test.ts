@@ -33,7 +33,7 @@ describe('edgesTsv', () => {
       frequenciesHz: [10],
       timesS: [0],
     };
-    const lines = edgesTsv([sampleEdge(), sampleEdge({ cluster: null })], axes).split('\n');
+    const lines = edgesTsv([sampleEdge(), sampleEdge({ cluster: null })], axes, 'ispc').split('\n');
     expect(lines.length).toBe(4);
     expect(lines[3]).toBe('');
     const cells = lines.slice(0, 3).map((line) => line.split('\t'));

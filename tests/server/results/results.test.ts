@@ -104,7 +104,7 @@ describe('the export', () => {
   test('holds every edge with all its digits, and describes every column', async () => {
     const found = await findFinishedRun(db, lab.member, runId);
     const edges = await runEdges(db, lab.member, runId, 'max-statistic');
-    const [head, ...lines] = edgesTsv(edges, found.facts.axes).trimEnd().split('\n');
+    const [head, ...lines] = edgesTsv(edges, found.facts.axes, 'ispc').trimEnd().split('\n');
     const names = head!.split('\t');
     expect(lines.length).toBe(edges.length);
     const first = Object.fromEntries(lines[0]!.split('\t').map((cell, i) => [names[i], cell]));

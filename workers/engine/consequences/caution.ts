@@ -25,6 +25,7 @@ export type CautionCode =
   | 'reference-analysed'
   | 'bad-site'
   | 'line-frequency'
+  | 'measure'
   | 'cluster-claim'
   | 'false-discovery-dependence';
 

@@ -26,6 +26,7 @@ const rules: CautionRule[] = [
   signal.wideKernels,
   signal.lineFrequency,
   signal.sharedSources,
+  test.measureCaution,
   test.coarseP,
   test.clusterClaim,
   test.falseDiscoveryDependence,

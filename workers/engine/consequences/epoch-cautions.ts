@@ -1,4 +1,5 @@
 import type { Epoch } from '../types';
+import { measureOf } from '../measure/registry';
 import { nullModelOf } from '../null/registry';
 import { runsTest } from '../numbers/runs-test';
 import { said, widestKernel, type CautionInput, type CautionRule } from './caution';
@@ -23,15 +24,15 @@ export const tooFewEpochs: CautionRule = ({ plan, facts }) => {
   };
 };
 
-export const fewEpochs: CautionRule = ({ facts: { epochs, chance } }) => {
+export const fewEpochs: CautionRule = ({ plan, facts: { epochs, chance } }) => {
   const condition = epochs.a <= epochs.b ? 'a' : 'b';
   const count = epochs[condition];
   const level = chance[condition];
-  if (count < 2 || count >= wantedEpochs || level === null) return null;
+  if (count < 2 || count >= wantedEpochs) return null;
   return {
     code: 'few-epochs',
     severity: 'attention',
-    message: `${condition.toUpperCase()} has ${said(count)} epochs only: chance alone makes ISPC near ${level.toFixed(2)}, so only large differences can be seen.`,
+    message: `${condition.toUpperCase()} has ${said(count)} epochs only: ${level === null || level === 0 ? 'chance alone moves the measure far' : `chance alone makes ${measureOf(plan.measure).shortName} near ${level.toFixed(2)}`}, so only large differences can be seen.`,
   };
 };
 
@@ -51,13 +52,14 @@ export const epochsLost: CautionRule = ({ plan, facts }) => {
   };
 };
 
-export const unequalEpochs: CautionRule = ({ facts: { epochs, chance } }) => {
+export const unequalEpochs: CautionRule = ({ plan, facts: { epochs, chance } }) => {
   const { a, b } = epochs;
   if (a < 2 || b < 2 || Math.max(a, b) / Math.min(a, b) < unequalRatio) return null;
+  if (chance.a === null || chance.b === null || chance.a === chance.b) return null;
   return {
     code: 'unequal-epochs',
     severity: 'attention',
-    message: `A has ${said(a)} epochs and B ${said(b)}: chance alone makes ISPC near ${chance.a!.toFixed(3)} in A and ${chance.b!.toFixed(3)} in B. The null keeps the counts, so p holds; the raw difference leans to the smaller condition.`,
+    message: `A has ${said(a)} epochs and B ${said(b)}: chance alone makes ${measureOf(plan.measure).shortName} near ${chance.a.toFixed(3)} in A and ${chance.b.toFixed(3)} in B. The null keeps the counts, so p holds; the raw difference leans to the smaller condition.`,
   };
 };
 

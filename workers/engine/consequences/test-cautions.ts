@@ -1,4 +1,5 @@
 import { correctionOf } from '../correct/registry';
+import { measureOf } from '../measure/registry';
 import { nullModelOf } from '../null/registry';
 import { said, widestKernel, type CautionRule } from './caution';
 import { togetherForFalseDiscovery } from './reach';
@@ -90,6 +91,13 @@ export const windowTooLong: CautionRule = ({ plan, window }) => {
     severity: 'stop',
     message: `A window of ${said(window.count)} samples is too long for the null "${name}", which takes ${said(mostWindowSamples)}: shorten the window.`,
   };
+};
+
+export const measureCaution: CautionRule = ({ plan }) => {
+  const { caution, shortName } = measureOf(plan.measure);
+  return caution === null
+    ? null
+    : { code: 'measure', severity: 'note', message: `${shortName}: ${caution}` };
 };
 
 export const clusterClaim: CautionRule = ({ plan }) =>

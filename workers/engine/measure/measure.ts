@@ -1,3 +1,5 @@
+import type { ChanceLevels } from '../numbers/chance';
+
 /** Which stretches of phasors are summed, epoch by epoch. */
 export interface EpochRows {
   /** Epochs to sum: the first `epochCount` entries of both lists of starts. */
@@ -30,10 +32,18 @@ export interface ShiftedWindow {
 export interface Measure<Id extends string = string> {
   id: Id;
   name: string;
+  /** For column heads and readings: "ISPC" in "ISPC A". */
+  shortName: string;
   /** One sentence for hover and focus. */
   sentence: string;
   formula: string;
   source: string;
+  /** What a value of it does not say; null where nothing is to add. */
+  caution: string | null;
+  /** Whether phasors keep their amplitude (z in uV) or are of length 1 (u). */
+  needsAmplitude: boolean;
+  /** What it does where there is no synchrony; null where no formula holds. */
+  chance: ChanceLevels | null;
   /** Smallest and largest possible value. */
   range: [number, number];
   /** 1 to 8. */

@@ -1,3 +1,4 @@
+import { measureOf, type MeasureId } from '$engine';
 import type { ResultAxes, ResultEdge } from '$lib/model/result';
 import { claimedLagRad, isNearZeroLag, lagMs } from '$lib/result/zero-lag';
 
@@ -14,8 +15,26 @@ const site = (end: 0 | 1) => (edge: ResultEdge, axes: ResultAxes) =>
 
 const interval95 = '95 % Clopper-Pearson interval for the Monte Carlo error';
 
-/** The columns of the exported edge table, in order; the sidecar describes each by its name. */
-export const edgeColumns: EdgeColumn[] = [
+/** What the columns of observed values are called: ispc_a, phase_lag_index_a. */
+const columnName = (measure: MeasureId) => measure.replaceAll('-', '_');
+
+function observedColumns(measure: MeasureId): EdgeColumn[] {
+  const { name, range } = measureOf(measure);
+  const [a, b] = ['a', 'b'].map((condition) => `${columnName(measure)}_${condition}`);
+  const describe = (condition: string) =>
+    `${name} over the epochs of ${condition} at the peak, ${range[0]} to ${range[1]}.`;
+  return [
+    { name: a!, description: describe('A'), value: (edge) => edge.observedA },
+    { name: b!, description: describe('B'), value: (edge) => edge.observedB },
+    {
+      name: 'difference',
+      description: `${a} minus ${b}.`,
+      value: (edge) => edge.difference,
+    },
+  ];
+}
+
+const placeColumns: EdgeColumn[] = [
   { name: 'site_1', description: 'First site of the pair.', value: site(0) },
   { name: 'site_2', description: 'Second site of the pair.', value: site(1) },
   {
@@ -59,21 +78,9 @@ export const edgeColumns: EdgeColumn[] = [
     description: 'Points of the frequency-by-time grid in the region.',
     value: (edge) => edge.points,
   },
-  {
-    name: 'ispc_a',
-    description: 'Inter-site phase clustering over the epochs of A at the peak, 0 to 1.',
-    value: (edge) => edge.observedA,
-  },
-  {
-    name: 'ispc_b',
-    description: 'Inter-site phase clustering over the epochs of B at the peak, 0 to 1.',
-    value: (edge) => edge.observedB,
-  },
-  {
-    name: 'difference',
-    description: 'ispc_a minus ispc_b.',
-    value: (edge) => edge.difference,
-  },
+];
+
+const claimColumns: EdgeColumn[] = [
   {
     name: 'z',
     description: "The peak's statistic in standard deviations of its own null distribution.",
@@ -137,3 +144,8 @@ export const edgeColumns: EdgeColumn[] = [
     value: (edge) => edge.cluster,
   },
 ];
+
+/** The columns of the exported edge table, in order; the sidecar describes each by its name. */
+export function edgeColumns(measure: MeasureId): EdgeColumn[] {
+  return [...placeColumns, ...observedColumns(measure), ...claimColumns];
+}

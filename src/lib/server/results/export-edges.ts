@@ -1,4 +1,4 @@
-import { correctionOf, type CorrectionId } from '$engine';
+import { correctionOf, measureOf, type CorrectionId, type MeasureId } from '$engine';
 import type { ResultAxes, ResultEdge } from '$lib/model/result';
 import type { FoundRun } from './find-run';
 import { edgeColumns } from './edge-columns';
@@ -16,19 +16,26 @@ export function tsvCell(value: string | number | null): string {
 }
 
 /** UTF-8 text, one line an edge, tab-separated, the first line the column names. */
-export function edgesTsv(edges: readonly ResultEdge[], axes: ResultAxes): string {
-  const lines = [edgeColumns.map((column) => column.name)];
+export function edgesTsv(
+  edges: readonly ResultEdge[],
+  axes: ResultAxes,
+  measure: MeasureId,
+): string {
+  const columns = edgeColumns(measure);
+  const lines = [columns.map((column) => column.name)];
   for (const edge of edges) {
-    lines.push(edgeColumns.map((column) => tsvCell(column.value(edge, axes))));
+    lines.push(columns.map((column) => tsvCell(column.value(edge, axes))));
   }
   return lines.map((cells) => `${cells.join('\t')}\n`).join('');
 }
 
 /** What must be known of a claim wherever its numbers go. */
-export function exportCautions(correction: CorrectionId): string[] {
+export function exportCautions(correction: CorrectionId, measure: MeasureId): string[] {
   const { sentence, caution } = correctionOf(correction);
+  const ofMeasure = measureOf(measure).caution;
   return [
     caution ?? sentence,
+    ...(ofMeasure === null ? [] : [ofMeasure]),
     'Sites can share sources and a reference (volume conduction): edges with a preferred lag near zero or half a turn have a simpler explanation than synchrony.',
     'For research. Not a medical device, and no basis for a diagnosis; local ethics and data rules apply.',
   ];
@@ -38,7 +45,7 @@ export function exportCautions(correction: CorrectionId): string[] {
 export function edgesJson(found: FoundRun, correction: CorrectionId, edgeCount: number): object {
   const { run, plan, contrast } = found;
   const { test } = plan.body;
-  const columns = edgeColumns.map(({ name, description, units }) => [
+  const columns = edgeColumns(plan.body.measure).map(({ name, description, units }) => [
     name,
     { Description: description, ...(units ? { Units: units } : {}) },
   ]);
@@ -67,7 +74,7 @@ export function edgesJson(found: FoundRun, correction: CorrectionId, edgeCount: 
     Digest: run.digest,
     FinishedAt: run.finishedAt.toISOString(),
     MissingValue: 'n/a',
-    Cautions: exportCautions(correction),
+    Cautions: exportCautions(correction, plan.body.measure),
     Columns: Object.fromEntries(columns),
   };
 }

@@ -38,7 +38,7 @@ export const GET: RequestHandler = async (event) => {
   if (query.data.format === 'json') {
     return json(edgesJson(found, correction, edges.length), { headers });
   }
-  return new Response(edgesTsv(edges, found.facts.axes), {
+  return new Response(edgesTsv(edges, found.facts.axes, found.plan.body.measure), {
     headers: { ...headers, 'content-type': 'text/tab-separated-values; charset=utf-8' },
   });
 };
