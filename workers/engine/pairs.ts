@@ -1,12 +1,11 @@
 import { withKernels } from '../kernels';
 import { groupFeatures } from '../kernels/group';
+import { standardised } from '../kernels/group-maps';
 import { tailSign } from './correct/tail';
 import type { RunCounts } from './digest';
 import { histogramBins } from './histogram';
-import { standardised } from './null/group-state';
-import { pairNull, type NullSettings, type PairNull } from './null/pair-null';
+import { PairNull, type NullSettings } from './null/pair-null';
 import { nullModelOf } from './null/registry';
-import { observer, type Observed, type Observer } from './observe';
 import { newBlock } from './pair-block';
 import type { Plan } from './plan';
 import { runInput } from './run-input';
@@ -50,12 +49,11 @@ export function computePairs(
   const run = runInput(plan, axes, phases, draws);
   const block = newBlock(axes, range, plan.test.permutations);
   withKernels((kernels) => {
-    const observe = observer(run);
-    const nulls = pairNull(nullModelOf(plan.null), run, kernels, nullSettings(plan, axes));
-    const work = pairWork(run.featureCount, observe, nulls, block);
+    const nulls = new PairNull(nullModelOf(plan.null), run, kernels, nullSettings(plan, axes));
     for (let pair = range.from; pair < range.to; pair++) {
       const [j, k] = axes.pairs[pair];
-      work(pair - range.from, j, k);
+      nulls.add(j, k);
+      storePair(nulls, pairPart(block, pair - range.from, run.featureCount));
       onPair(pair - range.from + 1);
     }
     storeMaxima(nulls, block);
@@ -63,35 +61,22 @@ export function computePairs(
   return block;
 }
 
-/** All that one pair needs, made once for a block: a function that fills one pair of it. */
-function pairWork(
-  featureCount: number,
-  observe: Observer,
-  nulls: PairNull,
-  block: PairBlock,
-): (index: number, j: number, k: number) => void {
-  const a = newObserved(featureCount);
-  const b = newObserved(featureCount);
-  return (index, j, k) => {
-    const part = pairPart(block, index, featureCount);
-    observe.observe(j, k, 'a', a);
-    observe.observe(j, k, 'b', b);
-    nulls.add(j, k, a.value, b.value);
-    part.observedA.set(a.value);
-    part.observedB.set(b.value);
-    part.lagA.set(a.lagRad);
-    part.lagB.set(b.lagRad);
-    part.histogram.set(nulls.histogram.subarray(0, part.histogram.length));
-    for (let x = 0; x < featureCount; x++) {
-      const state = nulls.groups[Math.floor(x / groupFeatures)];
-      const lane = x % groupFeatures;
-      part.nullMean[x] = state.mean[lane];
-      part.nullSd[x] = state.sd[lane];
-      part.upper[x] = state.upper[lane];
-      part.lower[x] = state.lower[lane];
-      part.z[x] = standardised(nulls.observed[x], state, lane);
-    }
-  };
+/** Copies what was worked out for a pair to its rows of the block. */
+function storePair({ a, b, observed, groups, histogram }: PairNull, part: PairPart): void {
+  part.observedA.set(a.value);
+  part.observedB.set(b.value);
+  part.lagA.set(a.lagRad);
+  part.lagB.set(b.lagRad);
+  part.histogram.set(histogram.subarray(0, part.histogram.length));
+  for (let x = 0; x < part.z.length; x++) {
+    const state = groups[Math.floor(x / groupFeatures)];
+    const lane = x % groupFeatures;
+    part.nullMean[x] = state.mean[lane];
+    part.nullSd[x] = state.sd[lane];
+    part.upper[x] = state.upper[lane];
+    part.lower[x] = state.lower[lane];
+    part.z[x] = standardised(observed[x], state.map, lane);
+  }
 }
 
 function storeMaxima({ best, masses }: PairNull, block: PairBlock): void {
@@ -99,10 +84,6 @@ function storeMaxima({ best, masses }: PairNull, block: PairBlock): void {
   for (let p = 0; p < masses.length; p++) {
     block.maxStatistic[p] = Math.max(...best.subarray(4 * p, 4 * p + 4));
   }
-}
-
-function newObserved(featureCount: number): Observed {
-  return { value: new Float64Array(featureCount), lagRad: new Float64Array(featureCount) };
 }
 
 function nullSettings(plan: Plan, axes: Axes): NullSettings {
@@ -117,8 +98,10 @@ function nullSettings(plan: Plan, axes: Axes): NullSettings {
   };
 }
 
+type PairPart = Omit<PairBlock, 'firstPair' | 'pairCount' | 'maxStatistic' | 'maxClusterMass'>;
+
 /** Views of one pair's rows of a block. */
-function pairPart(block: PairBlock, index: number, featureCount: number) {
+function pairPart(block: PairBlock, index: number, featureCount: number): PairPart {
   const from = index * featureCount;
   const to = from + featureCount;
   const bins = histogramBins.count;

@@ -1,4 +1,5 @@
-import { clusterForest, joinClusters, releaseClusters, type ClusterForest } from './clusters';
+import { clusterForest, joinClusters, releaseClusters } from './clusters';
+import { groupFeatures } from './group';
 import type { NullMapRows, NullMapShape } from './group-maps';
 
 /** Elements of f64 that the compiled kernel joins runs in: four arrays of at most T / 2 runs a row. */
@@ -16,41 +17,42 @@ export function clusterScratchLength(frequencyCount: number, timeCount: number):
  * Source: Maris and Oostenveld 2007.
  */
 export function addClusterMasses(
-  rows: NullMapRows,
+  maps: Pick<NullMapRows, 'z' | 'positive' | 'negative'>,
   masses: Float32Array,
   _scratch: Float64Array,
   map: { rows: number; frequencyCount: number; timeCount: number; shape: NullMapShape },
 ): void {
-  const { frequencyCount, timeCount, shape } = map;
-  const featureCount = frequencyCount * timeCount;
-  const forest = clusterForest(featureCount);
+  const { rows, timeCount, shape } = map;
+  const featureCount = map.frequencyCount * timeCount;
+  const z = new Float32Array(featureCount);
   const points = new Int32Array(featureCount);
-  for (let row = 0; row < map.rows; row++) {
-    const at = { z: row * shape.stride, bits: row * shape.bitStride };
-    for (const bits of signsOf(rows, shape.tailSign)) {
-      const mass = largest(rows.z, bits, at, { points, forest, featureCount, timeCount });
+  const forest = clusterForest(featureCount);
+  for (let row = 0; row < rows; row++) {
+    for (let x = 0; x < featureCount; x++) {
+      z[x] = maps.z[((x >> 3) * rows + row) * groupFeatures + (x & 7)];
+    }
+    for (const bits of signsOf(maps, shape.tailSign)) {
+      const pointCount = marked(bits, row * shape.bitStride, featureCount, points);
+      const mass = joinClusters(z, 0, points, forest, { pointCount, timeCount });
+      releaseClusters(points, pointCount, forest);
       if (mass > masses[row]) masses[row] = mass;
     }
   }
 }
 
-function signsOf(rows: NullMapRows, tailSign: -1 | 0 | 1): Uint8Array[] {
-  if (tailSign > 0) return [rows.positive];
-  return tailSign < 0 ? [rows.negative] : [rows.positive, rows.negative];
+function signsOf(
+  { positive, negative }: Pick<NullMapRows, 'positive' | 'negative'>,
+  tailSign: -1 | 0 | 1,
+): Uint8Array[] {
+  if (tailSign > 0) return [positive];
+  return tailSign < 0 ? [negative] : [positive, negative];
 }
 
-function largest(
-  z: Float32Array,
-  bits: Uint8Array,
-  at: { z: number; bits: number },
-  work: { points: Int32Array; forest: ClusterForest; featureCount: number; timeCount: number },
-): number {
-  const { points, forest, featureCount, timeCount } = work;
-  let pointCount = 0;
+/** Lists the points whose bits are set, and counts them. */
+function marked(bits: Uint8Array, start: number, featureCount: number, points: Int32Array): number {
+  let count = 0;
   for (let x = 0; x < featureCount; x++) {
-    if ((bits[at.bits + (x >> 3)] >> (x & 7)) & 1) points[pointCount++] = x;
+    if ((bits[start + (x >> 3)] >> (x & 7)) & 1) points[count++] = x;
   }
-  const mass = joinClusters(z, at.z, points, forest, { pointCount, timeCount });
-  releaseClusters(points, pointCount, forest);
-  return mass;
+  return count;
 }

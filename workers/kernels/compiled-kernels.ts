@@ -43,6 +43,15 @@ function groupKernels(wasm: KernelExports) {
         first,
         count,
       ),
+    siteLanes: (phasors, lanes, { epochCount, samplesPerEpoch, first, count }) =>
+      wasm.siteLanes(
+        phasors.byteOffset,
+        lanes.byteOffset,
+        epochCount,
+        samplesPerEpoch,
+        first,
+        count,
+      ),
     sumLanes: (terms, sums, { from, to }) =>
       wasm.sumLanes(terms.byteOffset, sums.byteOffset, from, to),
     sumLabelledLanes: (terms, offsets, table, sums, { epochCount, rows }) =>
@@ -105,15 +114,15 @@ function nullKernels(wasm: KernelExports) {
     addGroupMaps: (values, scale, out, histogram, { rows, features, shape }) =>
       wasm.addGroupMaps(
         values.byteOffset,
-        scale.mean.byteOffset,
+        scale.center.byteOffset,
         scale.inverse.byteOffset,
+        scale.rest.byteOffset,
         out.z.byteOffset,
         out.positive.byteOffset,
         out.negative.byteOffset,
         out.best.byteOffset,
         histogram.byteOffset,
         rows,
-        shape.stride,
         shape.bitStride,
         features,
         shape.clusterFormingZ,
@@ -121,6 +130,7 @@ function nullKernels(wasm: KernelExports) {
         shape.binCount,
         shape.binsPerUnit,
         shape.binOffset,
+        Number(shape.permutations > 65_535),
       ),
     addClusterMasses: (rows, masses, scratch, map) =>
       wasm.addClusterMasses(
@@ -132,7 +142,6 @@ function nullKernels(wasm: KernelExports) {
         map.rows,
         map.frequencyCount,
         map.timeCount,
-        map.shape.stride,
         map.shape.bitStride,
         map.shape.tailSign,
       ),

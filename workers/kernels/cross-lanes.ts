@@ -45,3 +45,23 @@ export function sumLanes(
     for (let lane = 0; lane < groupLanes; lane++) sums[lane] += terms[n * groupLanes + lane];
   }
 }
+
+/**
+ * The phasors of eight neighbouring features of one site at every epoch, side by side: the layout
+ * and the repeated last feature of `crossLanes`. Overwrites `lanes`; allocates nothing.
+ */
+export function siteLanes(
+  phasors: Float32Array,
+  lanes: Float32Array,
+  shape: { epochCount: number; samplesPerEpoch: number; first: number; count: number },
+): void {
+  const { epochCount, samplesPerEpoch, first, count } = shape;
+  for (let n = 0; n < epochCount; n++) {
+    const row = n * 2 * samplesPerEpoch + first;
+    for (let lane = 0; lane < groupFeatures; lane++) {
+      const at = row + Math.min(lane, count - 1);
+      lanes[n * groupLanes + lane] = phasors[at];
+      lanes[n * groupLanes + groupFeatures + lane] = phasors[at + samplesPerEpoch];
+    }
+  }
+}

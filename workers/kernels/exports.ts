@@ -11,6 +11,14 @@ export interface KernelExports extends WebAssembly.Exports {
     first: number,
     count: number,
   ): void;
+  siteLanes(
+    phasors: number,
+    lanes: number,
+    epochCount: number,
+    samplesPerEpoch: number,
+    first: number,
+    count: number,
+  ): void;
   sumLanes(terms: number, sums: number, from: number, to: number): void;
   sumLabelledLanes(
     terms: number,
@@ -60,15 +68,15 @@ export interface KernelExports extends WebAssembly.Exports {
   ): void;
   addGroupMaps(
     values: number,
-    mean: number,
+    center: number,
     inverse: number,
+    rest: number,
     z: number,
     positive: number,
     negative: number,
     best: number,
     histogram: number,
     rows: number,
-    stride: number,
     bitStride: number,
     features: number,
     formingZ: number,
@@ -76,6 +84,7 @@ export interface KernelExports extends WebAssembly.Exports {
     binCount: number,
     binsPerUnit: number,
     binOffset: number,
+    mayFill: number,
   ): void;
   addClusterMasses(
     z: number,
@@ -86,7 +95,6 @@ export interface KernelExports extends WebAssembly.Exports {
     rows: number,
     frequencyCount: number,
     timeCount: number,
-    stride: number,
     bitStride: number,
     tailSign: number,
   ): void;

@@ -1,9 +1,25 @@
 import { groupFeatures } from './group';
-import type { GroupScale } from './standardised-differences';
+
+/**
+ * What turns values of eight features into z in f32: `(value - center) * inverse - rest`, where
+ * center is the mean rounded to f32 and rest makes up for that; all 0 for a null without spread.
+ */
+export interface MapScale {
+  center: Float32Array;
+  inverse: Float32Array;
+  rest: Float32Array;
+}
+
+/** A value in units of its null: what z means everywhere. Each step is rounded to f32. */
+export function standardised(value: number, scale: MapScale, x: number): number {
+  const { fround } = Math;
+  const away = fround(value - scale.center[x]);
+  return fround(fround(away * scale.inverse[x]) - scale.rest[x]);
+}
 
 /** Null maps of one pair, row after row, that groups of features write their part of. */
 export interface NullMapRows {
-  /** `z[row * stride + feature]`. */
+  /** `z[(group * rows + row) * 8 + feature of the group]`: written and read in long stretches. */
   z: Float32Array;
   /** Bit x of a row says whether z is beyond the forming threshold: `[row * bitStride + byte]`. */
   positive: Uint8Array;
@@ -13,8 +29,6 @@ export interface NullMapRows {
 }
 
 export interface NullMapShape {
-  /** Elements of z from one row to the next: whole groups. */
-  stride: number;
   /** Bytes of bits from one row to the next, a multiple of 8. */
   bitStride: number;
   clusterFormingZ: number;
@@ -24,36 +38,37 @@ export interface NullMapShape {
   /** Bins to a unit of z, and the bin that begins at z = 0; both whole, so that no bin rounds. */
   binsPerUnit: number;
   binOffset: number;
+  /** Permutations of the whole null: more than 65535 may fill a bin. */
+  permutations: number;
 }
 
 /**
  * Turns surrogates of eight features into z, marks what is beyond the forming threshold, keeps the
  * largest tail statistic, and counts z into each feature's histogram.
  * Layout: `values[row * 8 + feature]`, `histogram[feature * binCount + bin]`, kept at 65535 when
- * full; out see `NullMapRows`, whose arrays begin at the group's feature (z), byte (bits) and row.
+ * full; out see `NullMapRows`, whose arrays begin at the group (z), its byte (bits) and its row.
  * Features from `group.features` on repeat another one and are left out of bits; their histograms
- * are scratch. Mutates all of `out` and `histogram`; allocates nothing. z is (value - mean) * inverse
- * in f64, rounded once.
+ * are scratch. Mutates all of `out` and `histogram`; allocates nothing. z errs by less than 3e-7 of
+ * itself.
  * Source: maximum statistic, Westfall and Young 1993.
  */
 export function addGroupMaps(
   values: Float32Array,
-  scale: GroupScale,
+  scale: MapScale,
   out: NullMapRows,
   histogram: Uint16Array,
   group: { rows: number; features: number; shape: NullMapShape },
 ): void {
   const { rows, features, shape } = group;
-  const { stride, bitStride, clusterFormingZ, tailSign } = shape;
+  const { bitStride, clusterFormingZ, tailSign } = shape;
   const { binCount, binsPerUnit, binOffset } = shape;
   const forming = Math.fround(clusterFormingZ);
   for (let row = 0; row < rows; row++) {
     let positive = 0;
     let negative = 0;
     for (let x = 0; x < groupFeatures; x++) {
-      const away = values[row * groupFeatures + x] - scale.mean[x];
-      const z = Math.fround(away * scale.inverse[x]);
-      out.z[row * stride + x] = z;
+      const z = standardised(values[row * groupFeatures + x], scale, x);
+      out.z[row * groupFeatures + x] = z;
       if (x < features && z > forming) positive |= 1 << x;
       if (x < features && z < -forming) negative |= 1 << x;
       const statistic = tailSign === 0 ? Math.abs(z) : tailSign * z;

@@ -1,5 +1,5 @@
 import type { addClusterMasses } from './cluster-masses';
-import type { crossLanes, sumLanes } from './cross-lanes';
+import type { crossLanes, siteLanes, sumLanes } from './cross-lanes';
 import type { addGroupMaps } from './group-maps';
 import type { addGroupMoments } from './group-moments';
 import type { sumLabelledLanes } from './label-lanes';
@@ -36,6 +36,7 @@ export interface Kernels {
    */
   arrays<Plan extends ArrayPlan>(plan: Plan): Arrays<Plan>;
   crossLanes: typeof crossLanes;
+  siteLanes: typeof siteLanes;
   sumLanes: typeof sumLanes;
   sumLabelledLanes: typeof sumLabelledLanes;
   sumShuffledLanes: typeof sumShuffledLanes;

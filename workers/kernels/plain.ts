@@ -1,5 +1,5 @@
 import { addClusterMasses } from './cluster-masses';
-import { crossLanes, sumLanes } from './cross-lanes';
+import { crossLanes, siteLanes, sumLanes } from './cross-lanes';
 import { addGroupMaps } from './group-maps';
 import { addGroupMoments } from './group-moments';
 import { arrayBytes, layArrays, type Kernels } from './kernels';
@@ -14,6 +14,7 @@ export function plainKernels(): Kernels {
     kind: 'plain',
     arrays: (plan) => layArrays(plan, new ArrayBuffer(arrayBytes(plan)), 0),
     crossLanes,
+    siteLanes,
     sumLanes,
     sumLabelledLanes,
     sumShuffledLanes,

@@ -44,7 +44,7 @@ test('the compiled kernels run here', () => {
 });
 
 describe('compiled kernels make the same bits as their plain twins', () => {
-  test('crossLanes and sumLanes, for any number of features in the last group', () => {
+  test('crossLanes, siteLanes and sumLanes, for any number of features in the last group', () => {
     fc.assert(
       fc.property(
         seed,
@@ -67,6 +67,8 @@ describe('compiled kernels make the same bits as their plain twins', () => {
               kernels.crossLanes(a.j, a.k, a.terms, { epochCount, samplesPerEpoch, first, count });
               kernels.sumLanes(a.terms, a.sums, { from: 1, to: epochCount });
               seen.push(...a.terms, ...a.sums);
+              kernels.siteLanes(a.j, a.terms, { epochCount, samplesPerEpoch, first, count });
+              seen.push(...a.terms);
             }
             return seen;
           });
@@ -228,18 +230,19 @@ function nullMaps(
   const featureCount = map.frequencyCount * map.timeCount;
   const stride = paddedFeatures(featureCount);
   const shape: NullMapShape = {
-    stride,
     bitStride: Math.ceil(stride / 64) * 8,
     clusterFormingZ: map.clusterFormingZ,
     tailSign: map.tailSign,
     binCount: 5,
     binsPerUnit: 2,
     binOffset: 2,
+    permutations: rowCount,
   };
   const a = kernels.arrays({
     values: ['f32', rowCount * 8],
-    mean: ['f64', 8],
-    inverse: ['f64', 8],
+    center: ['f32', 8],
+    inverse: ['f32', 8],
+    rest: ['f32', 8],
     z: ['f32', rowCount * stride],
     positive: ['u8', rowCount * shape.bitStride],
     negative: ['u8', rowCount * shape.bitStride],
@@ -251,10 +254,11 @@ function nullMaps(
   a.best.fill(-Infinity);
   for (let first = 0; first < featureCount; first += 8) {
     fill(a.values, next);
-    fill(a.mean, () => next() * 0.1);
+    fill(a.center, () => next() * 0.1);
+    fill(a.rest, () => next() * 1e-6);
     fill(a.inverse, next);
     const out = {
-      z: a.z.subarray(first),
+      z: a.z.subarray(first * rowCount),
       positive: a.positive.subarray(first / 8),
       negative: a.negative.subarray(first / 8),
       best: a.best,

@@ -1,4 +1,5 @@
 import { groupFeatures } from '../../kernels/group';
+import type { MapScale } from '../../kernels/group-maps';
 import type { GroupSums } from '../../kernels/group-moments';
 import type { ArrayPlan, Arrays } from '../../kernels/kernels';
 import { finishMoments } from '../../kernels/null-moments';
@@ -8,17 +9,20 @@ import { ties } from '../ties';
 /** Sums, counts and moments of eight features' surrogates; `inverse` is 1 / sd, or 0 for none. */
 export interface GroupState extends GroupSums, GroupScale {
   sd: Float64Array;
+  /** The same for z maps, in f32. */
+  map: MapScale;
 }
 
 const doublesEach = 6 * groupFeatures;
-const pairsEach = 2 * groupFeatures;
+const floatsEach = 5 * groupFeatures;
+const countsEach = 2 * groupFeatures;
 
 /** Arrays that `count` states are views of. */
 export function statePlan(count: number) {
   return {
     doubles: ['f64', count * doublesEach],
-    limits: ['f32', count * pairsEach],
-    counts: ['u32', count * pairsEach],
+    floats: ['f32', count * floatsEach],
+    counts: ['u32', count * countsEach],
   } as const satisfies ArrayPlan;
 }
 
@@ -30,8 +34,8 @@ export function groupStates(
 ): GroupState[] {
   return Array.from({ length: count }, (_, i) => {
     const doubles = (field: number) => eight(arrays.doubles, (from + i) * doublesEach, field);
-    const limits = (field: number) => eight(arrays.limits, (from + i) * pairsEach, field);
-    const counts = (field: number) => eight(arrays.counts, (from + i) * pairsEach, field);
+    const floats = (field: number) => eight(arrays.floats, (from + i) * floatsEach, field);
+    const counts = (field: number) => eight(arrays.counts, (from + i) * countsEach, field);
     return {
       origin: doubles(0),
       sum: doubles(1),
@@ -39,8 +43,9 @@ export function groupStates(
       mean: doubles(3),
       sd: doubles(4),
       inverse: doubles(5),
-      upperFrom: limits(0),
-      lowerTo: limits(1),
+      map: { center: floats(0), inverse: floats(1), rest: floats(2) },
+      upperFrom: floats(3),
+      lowerTo: floats(4),
       upper: counts(0),
       lower: counts(1),
     };
@@ -60,7 +65,11 @@ function eight<T extends Float64Array | Float32Array | Uint32Array>(
 export function finishState(state: GroupState, permutations: number): void {
   finishMoments(state, permutations, ties.zeroSd, state.mean, state.sd);
   for (let x = 0; x < groupFeatures; x++) {
-    state.inverse[x] = state.sd[x] === 0 ? 0 : 1 / state.sd[x];
+    const { map, mean, sd, inverse } = state;
+    inverse[x] = sd[x] === 0 ? 0 : 1 / sd[x];
+    map.center[x] = mean[x];
+    map.inverse[x] = inverse[x];
+    map.rest[x] = (mean[x] - map.center[x]) * inverse[x];
   }
 }
 
@@ -69,9 +78,4 @@ export function sharedScale(a: GroupState, b: GroupState): void {
   for (let x = 0; x < groupFeatures; x++) {
     if (a.inverse[x] === 0 || b.inverse[x] === 0) a.inverse[x] = b.inverse[x] = 0;
   }
-}
-
-/** A value in units of a null, rounded to f32: what z means everywhere. */
-export function standardised(value: number, scale: GroupScale, x: number): number {
-  return Math.fround((value - scale.mean[x]) * scale.inverse[x]);
 }

@@ -1,62 +1,70 @@
 import { groupFeatures, groupLanes } from '../../kernels/group';
+import type { Arrays, ArrayPlan, Kernels } from '../../kernels/kernels';
 import { labelLaneTableLength, labelOffsetCount, labelOffsets } from '../../kernels/label-lanes';
-import type { Arrays } from '../../kernels/kernels';
-import type { GroupSource, PermutationRange, RunInput } from './model';
-import { siteSlots } from './site-slots';
+import type { GroupSampler, GroupSource, HeldPair, PermutationRange, RunInput } from './model';
 
 /**
  * Surrogates of relabelled epochs for resultant lengths, by tables of partial sums; B is the total
- * minus A. Null for other measures.
+ * minus A.
  */
-export function labelGroups(run: RunInput): GroupSource | null {
-  if (!run.measure.isResultantLength || run.layout.samplesPerEpoch !== run.featureCount)
-    return null;
-  const { layout, shape, featureCount } = run;
-  const { epochCount, samplesPerEpoch } = layout;
-  const { epochsA, epochsB } = shape;
-  const slots = siteSlots(run);
-  const plan = (rows: number) =>
-    ({
-      ...slots.arrays,
-      terms: ['f32', epochCount * groupLanes],
-      offsets: ['u16', labelOffsetCount(epochCount, rows)],
-      table: ['f32', labelLaneTableLength],
-      labelled: ['f32', rows * groupLanes],
-      total: ['f32', groupLanes],
-      exact: ['f64', groupLanes],
-    }) as const;
-
+export function labelGroups(run: RunInput): GroupSource {
   return {
-    arrays: plan,
-    sampler(kernels, given) {
-      const arrays = given as Arrays<ReturnType<typeof plan>>;
-      const { terms, offsets, table, labelled, total, exact } = arrays;
-      const masks = new Uint8Array(run.draws);
-      let rearranged: PermutationRange = { from: 0, to: 0 };
-      let pair = slots.none(arrays);
-
-      function arrange(range: PermutationRange) {
-        if (rearranged.from === range.from && rearranged.to === range.to) return;
-        labelOffsets(masks, offsets, epochCount, range);
-        rearranged = range;
-      }
-
-      return {
-        begin(j, k) {
-          pair = slots.hold(arrays, j, k);
-        },
-        fill(group, range, values) {
-          arrange(range);
-          const rows = range.to - range.from;
-          const first = group * groupFeatures;
-          const count = Math.min(groupFeatures, featureCount - first);
-          kernels.crossLanes(pair.j, pair.k, terms, { epochCount, samplesPerEpoch, first, count });
-          kernels.sumLanes(terms, exact, { from: 0, to: epochCount });
-          total.set(exact);
-          kernels.sumLabelledLanes(terms, offsets, table, labelled, { epochCount, rows });
-          kernels.resultantDifferences(labelled, total, values, { rows, epochsA, epochsB });
-        },
-      };
-    },
+    arrays: (rows) => labelArrays(run, rows),
+    sampler: (kernels, arrays) => new LabelGroups(run, kernels, arrays as LabelArrays),
   };
+}
+
+function labelArrays({ layout }: RunInput, rows: number) {
+  return {
+    terms: ['f32', layout.epochCount * groupLanes],
+    offsets: ['u16', labelOffsetCount(layout.epochCount, rows)],
+    table: ['f32', labelLaneTableLength],
+    labelled: ['f32', rows * groupLanes],
+    total: ['f32', groupLanes],
+    exact: ['f64', groupLanes],
+  } as const satisfies ArrayPlan;
+}
+
+type LabelArrays = Arrays<ReturnType<typeof labelArrays>>;
+
+class LabelGroups implements GroupSampler {
+  private readonly masks: Uint8Array;
+  private arranged: PermutationRange = { from: 0, to: 0 };
+  private pair: HeldPair | null = null;
+
+  constructor(
+    private readonly run: RunInput,
+    private readonly kernels: Kernels,
+    private readonly arrays: LabelArrays,
+  ) {
+    this.masks = new Uint8Array(run.draws);
+  }
+
+  begin(pair: HeldPair): void {
+    this.pair = pair;
+  }
+
+  fill(group: number, range: PermutationRange, values: Float32Array): void {
+    const { kernels, arrays, run } = this;
+    const { epochCount, samplesPerEpoch } = run.layout;
+    const { epochsA, epochsB } = run.shape;
+    const { phasorsJ, phasorsK } = this.pair!;
+    const { terms, offsets, table, labelled, total, exact } = arrays;
+    const rows = range.to - range.from;
+    const first = group * groupFeatures;
+    const count = Math.min(groupFeatures, run.featureCount - first);
+    this.arrange(range);
+    kernels.crossLanes(phasorsJ, phasorsK, terms, { epochCount, samplesPerEpoch, first, count });
+    kernels.sumLanes(terms, exact, { from: 0, to: epochCount });
+    total.set(exact);
+    kernels.sumLabelledLanes(terms, offsets, table, labelled, { epochCount, rows });
+    kernels.resultantDifferences(labelled, total, values, { rows, epochsA, epochsB });
+  }
+
+  /** Masks are rearranged once for a range, whatever the number of pairs. */
+  private arrange(range: PermutationRange): void {
+    if (this.arranged.from === range.from && this.arranged.to === range.to) return;
+    labelOffsets(this.masks, this.arrays.offsets, this.run.layout.epochCount, range);
+    this.arranged = range;
+  }
 }

@@ -49,11 +49,22 @@ export interface PairSampler {
 }
 
 /**
+ * The pair that is worked on. Its sites' phasors lie where kernels reach them, laid out as
+ * phase/layout.ts says of one site; empty where the run's kernels do not read phasors.
+ */
+export interface HeldPair {
+  j: number;
+  k: number;
+  phasorsJ: Float32Array;
+  phasorsK: Float32Array;
+}
+
+/**
  * Makes surrogates for eight neighbouring features at a time, the group that kernels work on.
  * It owns its arrays: not re-entrant.
  */
 export interface GroupSampler {
-  begin(j: number, k: number): void;
+  begin(pair: HeldPair): void;
   /**
    * Writes surrogates of features `8 * group ..`, `[permutation - range.from][8]`, as `PairSampler`
    * says of `first` and `second`. Beyond the last feature a group repeats it. Ranges are those that
@@ -104,6 +115,9 @@ export interface NullModel<Id extends string = string> {
   draw(seed: string, range: PermutationRange, draws: ArrayBufferLike, shape: DrawShape): void;
   /** The definition in f64: what a faster way is held against, and what runs where there is none. */
   sampler(run: RunInput): PairSampler;
-  /** A faster way by the compiled kernels; null where the run's measure has none. */
-  groups?(run: RunInput): GroupSource | null;
+  /**
+   * A faster way by the kernels, for measures that are resultant lengths. It needs the phasors at
+   * the plan's times only.
+   */
+  groups?(run: RunInput): GroupSource;
 }

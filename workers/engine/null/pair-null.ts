@@ -3,13 +3,16 @@ import { groupCount, groupFeatures, paddedFeatures } from '../../kernels/group';
 import type { NullMapShape } from '../../kernels/group-maps';
 import { leastFloatFrom, mostFloatTo } from '../../kernels/group-moments';
 import type { ArrayPlan, Arrays, Kernels } from '../../kernels/kernels';
+import { MeasureObserver, newObserved, type Observed, type Observer } from '../observe';
+import { LaneObserver, observerArrays } from '../observe-lanes';
 import { ties } from '../ties';
 import { finishState, groupStates, sharedScale, statePlan, type GroupState } from './group-state';
-import type { NullModel, PermutationRange, RunInput } from './model';
+import type { GroupSampler, NullModel, PermutationRange, RunInput } from './model';
 import { rowGroups } from './row-groups';
+import { SiteSlots } from './site-slots';
 
 /** Null maps that are held at once, 64 MB of f32; a null of more is gone through in tiles. */
-const tileValues = 2 ** 24;
+const mostTileValues = 2 ** 24;
 
 /** What the null maps are made with. */
 export interface NullSettings extends Pick<
@@ -22,181 +25,192 @@ export interface NullSettings extends Pick<
   tileValues?: number;
 }
 
-/** A pair's null, worked out; arrays of the next pair overwrite it. */
-export interface PairNull {
-  /**
-   * Works a pair out from its observed measures (f64). Afterwards `observed`, `groups` and
-   * `histogram` hold this pair's numbers, `best` and `masses` the largest of all pairs so far.
-   */
-  add(j: number, k: number, valueA: Float64Array, valueB: Float64Array): void;
-  /** The observed statistic of each feature, rounded to f32 as surrogates are. */
-  observed: Float64Array;
-  /** Moments and counts of features 8 g .. 8 g + 7. */
-  groups: GroupState[];
-  /** `histogram[feature * binCount + bin]`. */
-  histogram: Uint16Array;
-  /** `best[permutation * 4 + lane]` and `masses[permutation]`: see the kernels. */
-  best: Float32Array;
-  masses: Float32Array;
-}
-
 /**
  * The null of pairs' statistics: the difference of the measure, or the difference of each
  * condition's z against its own surrogates (numerics, section 5). Eight features go through all
  * steps while they are in cache. Where the maps of all permutations do not fit a tile, surrogates
  * are made again for each step: memory grows neither with pairs nor, beyond a tile, permutations.
  */
-export function pairNull(
-  model: NullModel,
-  run: RunInput,
-  kernels: Kernels,
-  settings: NullSettings,
-): PairNull {
-  const { permutations } = run.shape;
-  const { timeCount, frequencyCount } = settings;
-  const stride = paddedFeatures(run.featureCount);
-  const limit = Math.floor((settings.tileValues ?? tileValues) / stride);
-  const rows = Math.max(1, Math.min(permutations, limit));
-  const tiles = tilesOf(permutations, rows);
-  const shape: NullMapShape = { ...settings, stride, bitStride: Math.ceil(stride / 64) * 8 };
-  const source = model.groups?.(run) ?? rowGroups(model, run);
-  const plan = arrayPlan(model, run, rows, shape, settings);
-  const arrays = kernels.arrays({ ...source.arrays(rows), ...plan } as ArrayPlan) as Arrays<
-    typeof plan
-  >;
-  const sampler = source.sampler(kernels, arrays);
-  const count = groupCount(run.featureCount);
-  const own = groupStates(arrays, 0, count);
-  const isDifference = model.statistic === 'difference';
-  const ofA = isDifference ? [] : groupStates(arrays, count, count);
-  const ofB = isDifference ? [] : groupStates(arrays, 2 * count, count);
-  const observed = new Float64Array(stride);
-  const rowViews = Array.from({ length: count }, (_, group) => mapViews(arrays, group, shape));
-  let measured: { a: Float64Array; b: Float64Array } = { a: observed, b: observed };
-  arrays.best.fill(-Infinity);
+export class PairNull {
+  /** Observed measures of the pair that was added last. */
+  readonly a: Observed;
+  readonly b: Observed;
+  /** Its observed statistic, by feature, rounded to f32 as surrogates are. */
+  readonly observed: Float64Array;
+  /** Its moments and counts, of features 8 g .. 8 g + 7 at g. */
+  readonly groups: GroupState[];
+  /** Largest statistic and cluster mass of all pairs so far: see `NullMapRows`, `masses[p]`. */
+  readonly best: Float32Array;
+  readonly masses: Float32Array;
+  /** `histogram[feature * binCount + bin]` of the last pair. */
+  readonly histogram: Uint16Array;
 
-  function fill(group: number, range: PermutationRange) {
-    sampler.fill(group, range, arrays.first, arrays.second);
+  private readonly isDifference: boolean;
+  private readonly shape: NullMapShape;
+  private readonly tiles: PermutationRange[];
+  private readonly arrays: NullArrays;
+  private readonly sampler: GroupSampler;
+  private readonly observer: Observer;
+  private readonly slots: SiteSlots | null;
+  /** Nulls of each condition by itself, for differences of z. */
+  private readonly ofA: GroupState[];
+  private readonly ofB: GroupState[];
+
+  constructor(
+    model: NullModel,
+    private readonly run: RunInput,
+    private readonly kernels: Kernels,
+    private readonly settings: NullSettings,
+  ) {
+    const { permutations } = run.shape;
+    const count = groupCount(run.featureCount);
+    const stride = paddedFeatures(run.featureCount);
+    this.isDifference = model.statistic === 'difference';
+    this.shape = { ...settings, bitStride: Math.ceil(stride / 64) * 8, permutations };
+    const most = Math.floor((settings.tileValues ?? mostTileValues) / stride);
+    const rows = Math.max(1, Math.min(permutations, most));
+    this.tiles = tilesOf(permutations, rows);
+    const byLanes = run.measure.isResultantLength && !model.needsWholeWindow;
+    const source = (byLanes && model.groups?.(run)) || rowGroups(model, run);
+    const plan = nullArrays(run, rows, this.shape, settings, this.isDifference);
+    const lanes = byLanes ? { ...SiteSlots.plan(run), ...observerArrays(run) } : {};
+    const all = kernels.arrays<ArrayPlan>({ ...source.arrays(rows), ...lanes, ...plan });
+    const arrays = (this.arrays = all as NullArrays);
+    this.sampler = source.sampler(kernels, all);
+    this.slots = byLanes ? new SiteSlots(run, all as LaneArrays) : null;
+    this.observer = byLanes
+      ? new LaneObserver(run, kernels, all as LaneArrays)
+      : new MeasureObserver(run);
+    this.groups = groupStates(arrays, 0, count);
+    this.ofA = this.isDifference ? [] : groupStates(arrays, count, count);
+    this.ofB = this.isDifference ? [] : groupStates(arrays, 2 * count, count);
+    this.a = newObserved(run.featureCount);
+    this.b = newObserved(run.featureCount);
+    this.observed = new Float64Array(stride);
+    this.best = arrays.best.fill(-Infinity);
+    this.masses = arrays.masses;
+    this.histogram = arrays.histogram;
   }
 
-  function conditionSums(group: number, range: PermutationRange) {
-    const [size, start] = [range.to - range.from, range.from === 0];
-    kernels.addGroupMoments(arrays.first, ofA[group], size, start);
-    kernels.addGroupMoments(arrays.second, ofB[group], size, start);
-  }
-
-  function conditionScales(group: number) {
-    finishState(ofA[group], permutations);
-    finishState(ofB[group], permutations);
-    sharedScale(ofA[group], ofB[group]);
-  }
-
-  /** From what the sampler wrote to the statistic, in `first`. */
-  function combine(group: number, range: PermutationRange) {
-    if (isDifference) return;
-    const size = range.to - range.from;
-    kernels.standardisedDifferences(arrays.first, arrays.second, ofA[group], ofB[group], size);
-  }
-
-  function observe(group: number) {
-    const tolerance = isDifference ? ties.measure : ties.z;
-    const state = own[group];
-    for (let x = 0; x < groupFeatures; x++) {
-      const feature = Math.min(group * groupFeatures + x, run.featureCount - 1);
-      const [a, b] = [measured.a[feature], measured.b[feature]];
-      const value = isDifference ? a - b : zDifference(a, b, ofA[group], ofB[group], x);
-      const rounded = Math.fround(value);
-      observed[group * groupFeatures + x] = rounded;
-      state.upperFrom[x] = leastFloatFrom(rounded - tolerance);
-      state.lowerTo[x] = mostFloatTo(rounded + tolerance);
-    }
-  }
-
-  function sums(group: number, range: PermutationRange) {
-    const size = range.to - range.from;
-    kernels.addGroupMoments(arrays.first, own[group], size, range.from === 0);
-  }
-
-  function maps(group: number, range: PermutationRange) {
-    const { at, histogram } = rowViews[group];
-    const features = Math.min(groupFeatures, run.featureCount - group * groupFeatures);
-    const best = arrays.best.subarray(range.from * 4);
-    const part = { rows: range.to - range.from, features, shape };
-    kernels.addGroupMaps(arrays.first, own[group], { ...at, best }, histogram, part);
-  }
-
-  function clusters(range: PermutationRange) {
-    const map = { rows: range.to - range.from, frequencyCount, timeCount, shape };
-    const masses = arrays.masses.subarray(range.from);
-    kernels.addClusterMasses(arrays, masses, arrays.scratch, map);
-  }
-
-  function each(work: (group: number, range: PermutationRange) => void, range: PermutationRange) {
-    for (let group = 0; group < count; group++) work(group, range);
+  /** Works a pair out: its own numbers are overwritten, maxima over pairs raised. */
+  add(j: number, k: number): void {
+    const none = this.arrays.first;
+    const pair = this.slots?.hold(j, k) ?? { j, k, phasorsJ: none, phasorsK: none };
+    this.histogram.fill(0);
+    this.observer.observe(pair, this.a, this.b);
+    this.sampler.begin(pair);
+    if (this.tiles.length > 1) this.inTiles();
+    else this.atOnce(this.tiles[0]);
   }
 
   /** All steps of a group one after the other, on surrogates that are made once. */
-  function wholeGroup(group: number, range: PermutationRange) {
-    fill(group, range);
-    if (!isDifference) {
-      conditionSums(group, range);
-      conditionScales(group);
+  private atOnce(range: PermutationRange): void {
+    for (let group = 0; group < this.groups.length; group++) {
+      this.fill(group, range);
+      if (!this.isDifference) {
+        this.addConditions(group, range);
+        this.finishConditions(group);
+        this.combine(group, range);
+      }
+      this.takeObserved(group);
+      this.addSums(group, range);
+      finishState(this.groups[group], this.run.shape.permutations);
+      this.addMaps(group, range);
     }
-    combine(group, range);
-    observe(group);
-    sums(group, range);
-    finishState(own[group], permutations);
-    maps(group, range);
+    this.addClusters(range);
   }
 
-  /** The same in steps, each over all tiles. */
-  function inTiles() {
-    if (!isDifference) {
-      for (const range of tiles) {
-        each((group) => {
-          fill(group, range);
-          conditionSums(group, range);
-        }, range);
+  /** The same in steps, each over all tiles, on surrogates that are made for each step again. */
+  private inTiles(): void {
+    const groups = this.groups.map((_, group) => group);
+    if (!this.isDifference) {
+      this.eachTile((group, range) => this.addConditions(group, range), false);
+      for (const group of groups) this.finishConditions(group);
+    }
+    for (const group of groups) this.takeObserved(group);
+    this.eachTile((group, range) => this.addSums(group, range), true);
+    for (const state of this.groups) finishState(state, this.run.shape.permutations);
+    this.eachTile((group, range) => {
+      this.addMaps(group, range);
+      if (group === groups.length - 1) this.addClusters(range);
+    }, true);
+  }
+
+  private eachTile(step: (group: number, range: PermutationRange) => void, combined: boolean) {
+    for (const range of this.tiles) {
+      for (let group = 0; group < this.groups.length; group++) {
+        this.fill(group, range);
+        if (combined && !this.isDifference) this.combine(group, range);
+        step(group, range);
       }
-      each(conditionScales, tiles[0]);
-    }
-    each(observe, tiles[0]);
-    for (const range of tiles) {
-      each((group) => {
-        fill(group, range);
-        combine(group, range);
-        sums(group, range);
-      }, range);
-    }
-    for (const state of own) finishState(state, permutations);
-    for (const range of tiles) {
-      each((group) => {
-        fill(group, range);
-        combine(group, range);
-        maps(group, range);
-      }, range);
-      clusters(range);
     }
   }
 
-  return {
-    observed,
-    groups: own,
-    histogram: arrays.histogram,
-    best: arrays.best,
-    masses: arrays.masses,
-    add(j, k, valueA, valueB) {
-      measured = { a: valueA, b: valueB };
-      arrays.histogram.fill(0);
-      sampler.begin(j, k);
-      if (tiles.length > 1) {
-        inTiles();
-      } else {
-        each(wholeGroup, tiles[0]);
-        clusters(tiles[0]);
-      }
-    },
-  };
+  private fill(group: number, range: PermutationRange): void {
+    this.sampler.fill(group, range, this.arrays.first, this.arrays.second);
+  }
+
+  private addConditions(group: number, { from, to }: PermutationRange): void {
+    const { kernels, arrays } = this;
+    kernels.addGroupMoments(arrays.first, this.ofA[group], to - from, from === 0);
+    kernels.addGroupMoments(arrays.second, this.ofB[group], to - from, from === 0);
+  }
+
+  private finishConditions(group: number): void {
+    finishState(this.ofA[group], this.run.shape.permutations);
+    finishState(this.ofB[group], this.run.shape.permutations);
+    sharedScale(this.ofA[group], this.ofB[group]);
+  }
+
+  /** From measures of A and B to the difference of z, in `first`. */
+  private combine(group: number, { from, to }: PermutationRange): void {
+    const { first, second } = this.arrays;
+    const [a, b] = [this.ofA[group], this.ofB[group]];
+    this.kernels.standardisedDifferences(first, second, a, b, to - from);
+  }
+
+  private takeObserved(group: number): void {
+    const tolerance = this.isDifference ? ties.measure : ties.z;
+    const { upperFrom, lowerTo } = this.groups[group];
+    for (let x = 0; x < groupFeatures; x++) {
+      const feature = Math.min(group * groupFeatures + x, this.run.featureCount - 1);
+      const [a, b] = [this.a.value[feature], this.b.value[feature]];
+      const value = this.isDifference
+        ? a - b
+        : zDifference(a, b, this.ofA[group], this.ofB[group], x);
+      const rounded = Math.fround(value);
+      this.observed[group * groupFeatures + x] = rounded;
+      upperFrom[x] = leastFloatFrom(rounded - tolerance);
+      lowerTo[x] = mostFloatTo(rounded + tolerance);
+    }
+  }
+
+  private addSums(group: number, { from, to }: PermutationRange): void {
+    this.kernels.addGroupMoments(this.arrays.first, this.groups[group], to - from, from === 0);
+  }
+
+  private addMaps(group: number, { from, to }: PermutationRange): void {
+    const { arrays, shape } = this;
+    const feature = group * groupFeatures;
+    const rows = to - from;
+    const features = Math.min(groupFeatures, this.run.featureCount - feature);
+    const out = {
+      z: arrays.z.subarray(feature * rows),
+      positive: arrays.positive.subarray(group),
+      negative: arrays.negative.subarray(group),
+      best: arrays.best.subarray(from * 4),
+    };
+    const histogram = arrays.histogram.subarray(feature * shape.binCount);
+    const part = { rows, features, shape };
+    this.kernels.addGroupMaps(arrays.first, this.groups[group].map, out, histogram, part);
+  }
+
+  private addClusters({ from, to }: PermutationRange): void {
+    const { arrays, shape } = this;
+    const { frequencyCount, timeCount } = this.settings;
+    const map = { rows: to - from, frequencyCount, timeCount, shape };
+    this.kernels.addClusterMasses(arrays, arrays.masses.subarray(from), arrays.scratch, map);
+  }
 }
 
 function tilesOf(permutations: number, rows: number): PermutationRange[] {
@@ -206,45 +220,32 @@ function tilesOf(permutations: number, rows: number): PermutationRange[] {
   }));
 }
 
-function arrayPlan(
-  model: NullModel,
+type NullArrays = Arrays<ReturnType<typeof nullArrays>>;
+type LaneArrays = Arrays<ReturnType<typeof SiteSlots.plan> & ReturnType<typeof observerArrays>>;
+
+function nullArrays(
   run: RunInput,
   rows: number,
   shape: NullMapShape,
   { frequencyCount, timeCount }: NullSettings,
+  isDifference: boolean,
 ) {
-  const isDifference = model.statistic === 'difference';
+  const stride = paddedFeatures(run.featureCount);
   return {
     ...statePlan(groupCount(run.featureCount) * (isDifference ? 1 : 3)),
     first: ['f32', rows * groupFeatures],
     second: ['f32', isDifference ? 0 : rows * groupFeatures],
-    z: ['f32', rows * shape.stride],
+    z: ['f32', rows * stride],
     positive: ['u8', rows * shape.bitStride],
     negative: ['u8', rows * shape.bitStride],
-    histogram: ['u16', shape.stride * shape.binCount],
+    histogram: ['u16', stride * shape.binCount],
     best: ['f32', run.shape.permutations * 4],
     masses: ['f32', run.shape.permutations],
     scratch: ['f64', clusterScratchLength(frequencyCount, timeCount)],
-  } as const;
+  } as const satisfies ArrayPlan;
 }
 
-/** Where a group's part of the map rows begins. */
-function mapViews(
-  arrays: Arrays<ReturnType<typeof arrayPlan>>,
-  group: number,
-  { binCount }: NullMapShape,
-) {
-  const feature = group * groupFeatures;
-  return {
-    at: {
-      z: arrays.z.subarray(feature),
-      positive: arrays.positive.subarray(group),
-      negative: arrays.negative.subarray(group),
-    },
-    histogram: arrays.histogram.subarray(feature * binCount),
-  };
-}
-
+/** z_A - z_B of the observed measures. */
 function zDifference(a: number, b: number, ofA: GroupState, ofB: GroupState, x: number): number {
   const zA = (Math.fround(a) - ofA.mean[x]) * ofA.inverse[x];
   const zB = (Math.fround(b) - ofB.mean[x]) * ofB.inverse[x];

@@ -1,46 +1,67 @@
 import { groupFeatures } from '../../kernels/group';
-import type { GroupSource, NullModel, PermutationRange, RunInput } from './model';
+import type { Arrays, ArrayPlan } from '../../kernels/kernels';
+import type {
+  GroupSampler,
+  GroupSource,
+  HeldPair,
+  NullModel,
+  PairSampler,
+  PermutationRange,
+  RunInput,
+} from './model';
 
 /**
  * A null's f64 sampler as a source of groups: a pair's surrogates are made whole for a range of
  * permutations, then handed out eight features at a time.
  */
 export function rowGroups(model: NullModel, run: RunInput): GroupSource {
-  const { featureCount } = run;
+  const isDifference = model.statistic === 'difference';
+  const plan = (rows: number) =>
+    ({
+      rowsFirst: ['f32', rows * run.featureCount],
+      rowsSecond: ['f32', isDifference ? 0 : rows * run.featureCount],
+    }) as const satisfies ArrayPlan;
   return {
-    arrays: (rows) => ({
-      rowsFirst: ['f32', rows * featureCount],
-      rowsSecond: ['f32', model.statistic === 'difference' ? 0 : rows * featureCount],
-    }),
+    arrays: plan,
     sampler(_, arrays) {
-      const sampler = model.sampler(run);
-      const whole = [arrays.rowsFirst, arrays.rowsSecond] as Float32Array[];
-      let held = -1;
-      let pair = { j: 0, k: 0 };
-
-      function make(range: PermutationRange) {
-        if (held === range.from) return;
-        const values = (range.to - range.from) * featureCount;
-        const [first, second] = whole.map((array) => array.subarray(0, values));
-        sampler.surrogates(pair.j, pair.k, range, first, second);
-        held = range.from;
-      }
-
-      return {
-        begin(j, k) {
-          pair = { j, k };
-          held = -1;
-        },
-        fill(group, range, first, second) {
-          make(range);
-          const rows = range.to - range.from;
-          gather(whole[0], first, rows, group * groupFeatures, featureCount);
-          if (model.statistic === 'difference') return;
-          gather(whole[1], second, rows, group * groupFeatures, featureCount);
-        },
-      };
+      const { rowsFirst, rowsSecond } = arrays as Arrays<ReturnType<typeof plan>>;
+      return new RowGroups(model.sampler(run), run.featureCount, rowsFirst, rowsSecond);
     },
   };
+}
+
+class RowGroups implements GroupSampler {
+  private pair = { j: 0, k: 0 };
+  /** First permutation of the range that is held. */
+  private held = -1;
+
+  constructor(
+    private readonly sampler: PairSampler,
+    private readonly featureCount: number,
+    private readonly first: Float32Array,
+    private readonly second: Float32Array,
+  ) {}
+
+  begin({ j, k }: HeldPair): void {
+    this.pair = { j, k };
+    this.held = -1;
+  }
+
+  fill(group: number, range: PermutationRange, first: Float32Array, second: Float32Array): void {
+    if (this.held !== range.from) this.make(range);
+    const rows = range.to - range.from;
+    gather(this.first, first, rows, group * groupFeatures, this.featureCount);
+    if (this.second.length === 0) return;
+    gather(this.second, second, rows, group * groupFeatures, this.featureCount);
+  }
+
+  private make(range: PermutationRange): void {
+    const values = (range.to - range.from) * this.featureCount;
+    const first = this.first.subarray(0, values);
+    const second = this.second.subarray(0, values);
+    this.sampler.surrogates(this.pair.j, this.pair.k, range, first, second);
+    this.held = range.from;
+  }
 }
 
 function gather(

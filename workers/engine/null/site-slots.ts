@@ -1,5 +1,5 @@
 import type { ArrayPlan, Arrays } from '../../kernels/kernels';
-import type { RunInput } from './model';
+import type { HeldPair, RunInput } from './model';
 
 /** Vectors of the last group may be read past the end. */
 const slack = 8;
@@ -8,27 +8,33 @@ const slack = 8;
  * Copies of two sites' phasors beside the kernels' other arrays. Neighbouring pairs share their
  * first site, so most pairs copy one.
  */
-export function siteSlots(run: RunInput) {
-  const { layout, phasors } = run;
-  const length = layout.epochCount * 2 * layout.samplesPerEpoch;
-  const arrays = {
-    slotA: ['f32', length + slack],
-    slotB: ['f32', length + slack],
-  } as const satisfies ArrayPlan;
-  let held: [number, number] = [-1, -1];
+export class SiteSlots {
+  private held: [number, number] = [-1, -1];
 
-  function copy(site: number, into: Float32Array) {
-    into.set(phasors.subarray(site * length, (site + 1) * length));
+  constructor(
+    private readonly run: RunInput,
+    private readonly slots: Arrays<ReturnType<typeof SiteSlots.plan>>,
+  ) {}
+
+  static plan(run: RunInput) {
+    const length = siteLength(run) + slack;
+    return { slotJ: ['f32', length], slotK: ['f32', length] } as const satisfies ArrayPlan;
   }
 
-  return {
-    arrays,
-    none: (given: Arrays<typeof arrays>) => ({ j: given.slotA, k: given.slotB }),
-    hold(given: Arrays<typeof arrays>, j: number, k: number) {
-      if (held[0] !== j) copy(j, given.slotA);
-      if (held[1] !== k) copy(k, given.slotB);
-      held = [j, k];
-      return { j: given.slotA, k: given.slotB };
-    },
-  };
+  hold(j: number, k: number): HeldPair {
+    const { slotJ, slotK } = this.slots;
+    if (this.held[0] !== j) this.copy(j, slotJ);
+    if (this.held[1] !== k) this.copy(k, slotK);
+    this.held = [j, k];
+    return { j, k, phasorsJ: slotJ, phasorsK: slotK };
+  }
+
+  private copy(site: number, slot: Float32Array): void {
+    const length = siteLength(this.run);
+    slot.set(this.run.phasors.subarray(site * length, (site + 1) * length));
+  }
+}
+
+function siteLength({ layout }: RunInput): number {
+  return layout.epochCount * 2 * layout.samplesPerEpoch;
 }

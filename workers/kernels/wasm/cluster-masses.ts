@@ -27,7 +27,15 @@ function rootOf(parents: usize, run: i32): i32 {
 }
 
 /** Largest mass of one sign of one map. Scratch: parents, starts, ends i32, masses f64. */
-function largest(z: usize, bits: usize, scratch: usize, F: i32, T: i32, runs: i32): f64 {
+function largest(
+  z: usize,
+  groupBytes: usize,
+  bits: usize,
+  scratch: usize,
+  F: i32,
+  T: i32,
+  runs: i32,
+): f64 {
   const size = (<usize>runs) << 2;
   const masses = scratch;
   const parents = masses + (size << 1);
@@ -45,7 +53,10 @@ function largest(z: usize, bits: usize, scratch: usize, F: i32, T: i32, runs: i3
     while (from < rowEnd) {
       const to = next(bits, from, rowEnd, u64.MAX_VALUE);
       let mass: f64 = 0;
-      for (let x = from; x < to; x++) mass += <f64>abs(load<f32>(z + ((<usize>x) << 2)));
+      for (let x = from; x < to; x++) {
+        const group = z + <usize>(x >> 3) * groupBytes;
+        mass += <f64>abs(load<f32>(group + ((<usize>(x & 7)) << 2)));
+      }
       // Compared with the row above in its own columns.
       const start = from - T;
       const end = to - T;
@@ -85,17 +96,17 @@ export function addClusterMasses(
   rows: i32,
   F: i32,
   T: i32,
-  stride: i32,
   bitStride: i32,
   tailSign: i32,
 ): void {
   const runs = F * ((T + 1) >> 1);
+  const groupBytes = (<usize>rows) << 5;
   for (let row = 0; row < rows; row++) {
     let mass: f64 = 0;
-    if (tailSign >= 0) mass = largest(z, positive, scratch, F, T, runs);
-    if (tailSign <= 0) mass = max(mass, largest(z, negative, scratch, F, T, runs));
+    if (tailSign >= 0) mass = largest(z, groupBytes, positive, scratch, F, T, runs);
+    if (tailSign <= 0) mass = max(mass, largest(z, groupBytes, negative, scratch, F, T, runs));
     if (<f32>mass > load<f32>(masses)) store<f32>(masses, <f32>mass);
-    z += (<usize>stride) << 2;
+    z += 32;
     positive += <usize>bitStride;
     negative += <usize>bitStride;
     masses += 4;

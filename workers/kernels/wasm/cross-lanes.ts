@@ -59,3 +59,32 @@ export function sumLanes(terms: usize, sums: usize, from: i32, to: i32): void {
     v128.store(sums + (v << 1), high, 16);
   }
 }
+
+/** Twin: ../cross-lanes.ts. */
+export function siteLanes(
+  phasors: usize,
+  lanes: usize,
+  epochCount: i32,
+  samplesPerEpoch: i32,
+  first: i32,
+  count: i32,
+): void {
+  const part = (<usize>samplesPerEpoch) << 2;
+  let re = phasors + ((<usize>first) << 2);
+  for (let n = 0; n < epochCount; n++, re += part << 1, lanes += 64) {
+    const im = re + part;
+    if (count === 8) {
+      v128.store(lanes, v128.load(re));
+      v128.store(lanes, v128.load(re, 16), 16);
+      v128.store(lanes, v128.load(im), 32);
+      v128.store(lanes, v128.load(im, 16), 48);
+      continue;
+    }
+    for (let lane = 0; lane < 8; lane++) {
+      const at = (<usize>min(lane, count - 1)) << 2;
+      const out = lanes + ((<usize>lane) << 2);
+      store<f32>(out, load<f32>(re + at));
+      store<f32>(out, load<f32>(im + at), 32);
+    }
+  }
+}

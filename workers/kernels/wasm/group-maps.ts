@@ -1,84 +1,105 @@
-function standardise(x: v128, m0: v128, m1: v128, i0: v128, i1: v128): v128 {
-  const low = f64x2.mul(f64x2.sub(f64x2.promote_low_f32x4(x), m0), i0);
-  const top = f64x2.promote_low_f32x4(v128.shuffle<i32>(x, x, 2, 3, 2, 3));
-  const high = f64x2.mul(f64x2.sub(top, m1), i1);
-  return v128.shuffle<i32>(f32x4.demote_f64x2_zero(low), f32x4.demote_f64x2_zero(high), 0, 1, 4, 5);
+/** Numbers from here on have a spacing of 1: added to a small whole number, its bits are the low ones. */
+const wholeNumbers: f32 = 8388608;
+
+function standardise(x: v128, center: v128, inverse: v128, rest: v128): v128 {
+  return f32x4.sub(f32x4.mul(f32x4.sub(x, center), inverse), rest);
 }
 
-function bins(z: v128, perUnit: v128, offset: v128, last: v128): v128 {
-  const bin = i32x4.trunc_sat_f32x4_s(f32x4.floor(f32x4.mul(z, perUnit)));
-  return i32x4.min_s(last, i32x4.max_s(i32x4.splat(0), i32x4.add(bin, offset)));
+/** Bins as whole numbers in the low half of each lane. */
+function binsOf(z: v128, perUnit: v128, offset: v128, last: v128): v128 {
+  const bin = f32x4.add(f32x4.floor(f32x4.mul(z, perUnit)), offset);
+  const inside = f32x4.pmin(f32x4.pmax(bin, f32x4.splat(0)), last);
+  return v128.and(f32x4.add(inside, f32x4.splat(wholeNumbers)), i32x4.splat(0xffff));
 }
 
-function count(histogram: usize, bin: i32): void {
-  const slot = histogram + ((<usize>bin) << 1);
-  const held = <u32>load<u16>(slot);
-  store<u16>(slot, <u16>(held + <u32>(held < 65535)));
+function add(slot: usize): void {
+  store<u16>(slot, load<u16>(slot) + 1);
+}
+
+/** Counts four features' values; their bins are in 16-bit pieces of a word. */
+function count(histogram: usize, bins: u64, step: usize): void {
+  const low = <u32>bins;
+  const high = <u32>(bins >> 32);
+  add(histogram + (((<usize>low) & 0xffff) << 1));
+  add(histogram + step + ((<usize>(low >> 16)) << 1));
+  add(histogram + 2 * step + (((<usize>high) & 0xffff) << 1));
+  add(histogram + 3 * step + ((<usize>(high >> 16)) << 1));
+}
+
+/** The same where a bin may be full. */
+function countToFull(histogram: usize, bins: u64, step: usize): void {
+  for (let x = 0; x < 4; x++, histogram += step, bins >>= 16) {
+    const slot = histogram + (((<usize>bins) & 0xffff) << 1);
+    const held = <u32>load<u16>(slot);
+    store<u16>(slot, <u16>(held + <u32>(held < 65535)));
+  }
 }
 
 /** Twin: ../group-maps.ts. */
 export function addGroupMaps(
   values: usize,
-  mean: usize,
+  center: usize,
   inverse: usize,
+  rest: usize,
   z: usize,
   positive: usize,
   negative: usize,
   best: usize,
   histogram: usize,
   rows: i32,
-  stride: i32,
   bitStride: i32,
   features: i32,
   formingZ: f32,
   tailSign: i32,
   binCount: i32,
   binsPerUnit: f32,
-  binOffset: i32,
+  binOffset: f32,
+  mayFill: i32,
 ): void {
-  const m0 = v128.load(mean);
-  const m1 = v128.load(mean, 16);
-  const m2 = v128.load(mean, 32);
-  const m3 = v128.load(mean, 48);
+  const c0 = v128.load(center);
+  const c1 = v128.load(center, 16);
   const i0 = v128.load(inverse);
   const i1 = v128.load(inverse, 16);
-  const i2 = v128.load(inverse, 32);
-  const i3 = v128.load(inverse, 48);
+  const r0 = v128.load(rest);
+  const r1 = v128.load(rest, 16);
   const above = f32x4.splat(formingZ);
   const below = f32x4.splat(-formingZ);
   const keep = (1 << features) - 1;
   const perUnit = f32x4.splat(binsPerUnit);
-  const offset = i32x4.splat(binOffset);
-  const last = i32x4.splat(binCount - 1);
+  const offset = f32x4.splat(binOffset);
+  const last = f32x4.splat(<f32>(binCount - 1));
   // |z| clears the sign bit, -z flips it, z leaves it.
   const clear = i32x4.splat(tailSign === 0 ? 0x7fffffff : -1);
   const flip = i32x4.splat(tailSign < 0 ? <i32>0x80000000 : 0);
   const h = (<usize>binCount) << 1;
-  const zStep = (<usize>stride) << 2;
   const end = values + ((<usize>rows) << 5);
   for (; values < end; values += 32) {
-    const a = standardise(v128.load(values), m0, m1, i0, i1);
-    const b = standardise(v128.load(values, 16), m2, m3, i2, i3);
+    const a = standardise(v128.load(values), c0, i0, r0);
+    const b = standardise(v128.load(values, 16), c1, i1, r1);
     v128.store(z, a);
     v128.store(z, b, 16);
-    const up = i32x4.bitmask(f32x4.gt(a, above)) | (i32x4.bitmask(f32x4.gt(b, above)) << 4);
-    const down = i32x4.bitmask(f32x4.lt(a, below)) | (i32x4.bitmask(f32x4.lt(b, below)) << 4);
-    store<u8>(positive, <u8>(up & keep));
-    store<u8>(negative, <u8>(down & keep));
+    const up = i16x8.narrow_i32x4_s(f32x4.gt(a, above), f32x4.gt(b, above));
+    const down = i16x8.narrow_i32x4_s(f32x4.lt(a, below), f32x4.lt(b, below));
+    const beyond = i8x16.bitmask(i8x16.narrow_i16x8_s(up, down));
+    store<u8>(positive, <u8>(beyond & keep));
+    store<u8>(negative, <u8>((beyond >> 8) & keep));
     const sa = v128.xor(v128.and(a, clear), flip);
     const sb = v128.xor(v128.and(b, clear), flip);
     v128.store(best, f32x4.pmax(v128.load(best), f32x4.pmax(sa, sb)));
-    const p = bins(a, perUnit, offset, last);
-    const q = bins(b, perUnit, offset, last);
-    count(histogram, i32x4.extract_lane(p, 0));
-    count(histogram + h, i32x4.extract_lane(p, 1));
-    count(histogram + 2 * h, i32x4.extract_lane(p, 2));
-    count(histogram + 3 * h, i32x4.extract_lane(p, 3));
-    count(histogram + 4 * h, i32x4.extract_lane(q, 0));
-    count(histogram + 5 * h, i32x4.extract_lane(q, 1));
-    count(histogram + 6 * h, i32x4.extract_lane(q, 2));
-    count(histogram + 7 * h, i32x4.extract_lane(q, 3));
-    z += zStep;
+    const eight = i16x8.narrow_i32x4_s(
+      binsOf(a, perUnit, offset, last),
+      binsOf(b, perUnit, offset, last),
+    );
+    const low = <u64>i64x2.extract_lane(eight, 0);
+    const high = <u64>i64x2.extract_lane(eight, 1);
+    if (mayFill) {
+      countToFull(histogram, low, h);
+      countToFull(histogram + 4 * h, high, h);
+    } else {
+      count(histogram, low, h);
+      count(histogram + 4 * h, high, h);
+    }
+    z += 32;
     positive += <usize>bitStride;
     negative += <usize>bitStride;
     best += 16;

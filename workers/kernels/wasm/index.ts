@@ -1,7 +1,7 @@
 // AssemblyScript, not TypeScript: addresses in, nothing out. What each kernel does, its layout and
 // its source stand at its plain twin in workers/kernels/<name>.ts.
 export { addClusterMasses } from './cluster-masses';
-export { crossLanes, sumLanes } from './cross-lanes';
+export { crossLanes, siteLanes, sumLanes } from './cross-lanes';
 export { addGroupMaps } from './group-maps';
 export { addGroupMoments } from './group-moments';
 export { sumLabelledLanes } from './label-lanes';

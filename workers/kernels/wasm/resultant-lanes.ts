@@ -1,6 +1,6 @@
 function lengths(re: v128, im: v128, perEpoch: v128): v128 {
   const size = f32x4.sqrt(f32x4.add(f32x4.mul(re, re), f32x4.mul(im, im)));
-  return f32x4.min(f32x4.splat(1), f32x4.mul(size, perEpoch));
+  return f32x4.pmin(f32x4.mul(size, perEpoch), f32x4.splat(1));
 }
 
 /** Twin: ../resultant-lanes.ts. */
