@@ -2,15 +2,22 @@ import type { Axes, Epoch, LostEpoch, Outcome, PairBlock, RecordingFacts } from 
 import type { Plan } from './engine/plan';
 
 /**
- * What the page and an engine worker say to each other, over Comlink. The worker keeps no
+ * What a run and its engine workers say to each other, over Comlink. The worker keeps no
  * state between calls, so that any worker can do any part, in any order, again.
  */
 
-/** A recording's facts with its bytes (Blobs are handed over without copying). */
-export interface RecordingInput {
+/** What every worker must know of a recording; how its bytes are reached is the worker's own. */
+export interface KnownRecording {
   facts: RecordingFacts;
+}
+
+/** A browser's worker reads Blobs, which are handed over without copying. */
+export interface RecordingInput extends KnownRecording {
   blob: Blob;
 }
+
+/** A thread under Node reads Blobs, or opens the file itself. */
+export type ThreadRecording = RecordingInput | (KnownRecording & { path: string });
 
 /** Unit phasors of all kept epochs, shared by all workers; the engine states the layout. */
 export interface SharedPhases {
@@ -25,16 +32,16 @@ export interface SharedDraws {
   buffer: SharedArrayBuffer;
 }
 
-export interface EngineWorkerApi {
+export interface EngineWorkerApi<Recording extends KnownRecording = RecordingInput> {
   /** Reads the samples of these epochs and says which break a limit of the plan. */
-  screen(plan: Plan, recordings: RecordingInput[], epochs: Epoch[]): Promise<LostEpoch[]>;
+  screen(plan: Plan, recordings: Recording[], epochs: Epoch[]): Promise<LostEpoch[]>;
   /**
    * Writes the phases of `epochs[from..to)` into the shared buffer. `epochs` are the kept ones,
    * all of A before all of B.
    */
   phases(
     plan: Plan,
-    recordings: RecordingInput[],
+    recordings: Recording[],
     epochs: Epoch[],
     range: { from: number; to: number },
     shared: SharedPhases,

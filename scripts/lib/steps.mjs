@@ -1,7 +1,8 @@
 import { spawn, spawnSync } from 'node:child_process';
 import { createHash } from 'node:crypto';
-import { existsSync, readdirSync, readFileSync, statSync, writeFileSync } from 'node:fs';
+import { existsSync, readFileSync, writeFileSync } from 'node:fs';
 import path from 'node:path';
+import { filesBelow } from './files.mjs';
 import { ensureKernels } from './kernels.mjs';
 import { root } from './root.mjs';
 
@@ -41,12 +42,6 @@ const sources = [
   'tailwind.config.js',
   'tsconfig.json',
 ];
-
-function* filesBelow(place) {
-  if (!existsSync(place)) return;
-  if (statSync(place).isFile()) yield place;
-  else for (const name of readdirSync(place).sort()) yield* filesBelow(path.join(place, name));
-}
 
 function sourceHash() {
   const hash = createHash('sha256');

@@ -8,13 +8,13 @@ import { createEngineWorker } from './engine-worker';
 import { tallyOf, type EpochTally } from './epoch-tally';
 import { asRunError, isFinal, RunError } from './errors';
 import { isolationTrouble } from './isolation';
-import { WorkerPool } from './pool';
+import { WorkerPool } from '$workers/run/pool';
 import { PairProgress } from './progress.svelte';
 import { fetchRecording, type FetchProgress, type RecordingRef } from './recording-cache';
 import { changeRun, createRun } from './run-api';
 import { holdRunLock } from './run-lock';
-import { rangesLeft } from './split';
-import { draws, pairBlocks, phases, screen, type StepContext } from './steps';
+import { rangesLeft } from '$workers/run/split';
+import { draws, pairBlocks, phases, screen, type StepContext } from '$workers/run/steps';
 import { upload } from './upload';
 
 export type RunStatus = 'idle' | 'running' | 'paused' | 'stopped' | 'failed' | 'finished';

@@ -1,5 +1,6 @@
 import { describe, expect, test } from 'vitest';
-import { edgesTsv, tsvCell } from '$lib/server/results/export-edges';
+import { edgesTsv } from '$lib/model/edge-table';
+import { tsvCell } from '$lib/model/result-table';
 import { sampleEdge } from '../../engine/result/sample-edge';
 
 describe('tsvCell', () => {
@@ -50,7 +51,7 @@ describe('edgesTsv', () => {
       timesS: [0],
     };
     const edges = [sampleEdge({ lagARad: 0.05 }), sampleEdge({ lagARad: 0.71 })];
-    const [head, ...rows] = edgesTsv(edges, axes).trimEnd().split('\n');
+    const [head, ...rows] = edgesTsv(edges, axes, 'ispc').trimEnd().split('\n');
     const at = head!.split('\t').indexOf('lag_near_zero');
     expect(rows.map((row) => row.split('\t')[at])).toEqual(['true', 'false']);
   });

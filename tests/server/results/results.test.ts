@@ -1,10 +1,10 @@
 import { afterAll, beforeAll, describe, expect, test } from 'vitest';
 import { connect } from '$lib/server/database/connect';
+import { edgesTsv } from '$lib/model/edge-table';
 import { unpackEdges } from '$lib/model/packed-edges';
 import {
   contrastStage,
   edgesJson,
-  edgesTsv,
   findFinishedRun,
   finishedRuns,
   loadResult,

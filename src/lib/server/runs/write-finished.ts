@@ -1,6 +1,7 @@
 import type { Insertable } from 'kysely';
 import type { Cluster, Edge, Outcome } from '$engine';
 import type { RunSummary } from '$lib/model/run';
+import { resultEdgeOf } from '$lib/model/result-edge';
 import type { RunFacts } from '$lib/model/run-facts';
 import type { Member } from '../access';
 import { record } from '../audit';
@@ -165,36 +166,21 @@ function edgeRows(
   { outcome, expectation }: Finished,
   clusterIds: string[],
 ): Insertable<Database['edge']>[] {
-  const { sites, pairs, frequenciesHz, timesS } = expectation.axes;
+  const { axes } = expectation;
   return outcome.corrections.flatMap(({ edges }) =>
-    edges.map((edge: Edge) => ({
-      ...owner,
-      correction: edge.correction,
-      pairIndex: edge.pair,
-      siteJ: sites[pairs[edge.pair]![0]]!,
-      siteK: sites[pairs[edge.pair]![1]]!,
-      fromHz: edge.fromHz,
-      toHz: edge.toHz,
-      fromS: edge.fromS,
-      toS: edge.toS,
-      peakHz: frequenciesHz[Math.floor(edge.peakPoint / timesS.length)]!,
-      peakS: timesS[edge.peakPoint % timesS.length]!,
-      peakPoint: edge.peakPoint,
-      points: edge.points,
-      observedA: edge.observedA,
-      observedB: edge.observedB,
-      difference: edge.difference,
-      z: edge.z,
-      p: edge.p,
-      pLow: edge.pInterval[0],
-      pHigh: edge.pInterval[1],
-      adjustedP: edge.adjustedP,
-      adjustedPLow: edge.adjustedPInterval?.[0] ?? null,
-      adjustedPHigh: edge.adjustedPInterval?.[1] ?? null,
-      lagARad: edge.lagARad,
-      lagBRad: edge.lagBRad,
-      clusterId: edge.cluster === null ? null : clusterIds[edge.cluster]!,
-    })),
+    edges.map((edge: Edge) => {
+      const { pair, cluster, ...values } = resultEdgeOf(edge, axes);
+      const [j, k] = axes.pairs[pair]!;
+      return {
+        ...owner,
+        ...values,
+        correction: edge.correction,
+        pairIndex: pair,
+        siteJ: axes.sites[j]!,
+        siteK: axes.sites[k]!,
+        clusterId: cluster === null ? null : clusterIds[cluster - 1]!,
+      };
+    }),
   );
 }
 

@@ -1,14 +1,28 @@
-import { wrap, type Remote } from 'comlink';
-import type { EngineWorkerApi } from '$workers/protocol';
-import { asRunError, RunError } from './errors';
+import type { EngineWorkerApi, KnownRecording, RecordingInput } from '../protocol';
+import { PoolError } from './pool-error';
 
-export type EngineApi = Remote<EngineWorkerApi>;
 /** One part of the work. It may be called again on another worker when the first one breaks. */
-export type Task<T> = (api: EngineApi, worker: number) => Promise<T>;
+export type Task<T, Recording extends KnownRecording = RecordingInput> = (
+  api: EngineWorkerApi<Recording>,
+  worker: number,
+) => Promise<T>;
 
-export interface PoolOptions {
+/** What the steps of a run ask of a pool. */
+export interface TaskPool<Recording extends KnownRecording = RecordingInput> {
+  readonly size: number;
+  run<T>(task: Task<T, Recording>): Promise<T>;
+}
+
+/** A worker of any kind: a browser's, or a thread under Node. */
+export interface OpenWorker<Recording extends KnownRecording = RecordingInput> {
+  api: EngineWorkerApi<Recording>;
+  terminate(): void;
+}
+
+export interface PoolOptions<Recording extends KnownRecording = RecordingInput> {
   size: number;
-  createWorker: () => Worker;
+  /** `onBroken` is told, with the reason in words, when the worker can no longer answer. */
+  createWorker: (onBroken: (reason: string) => void) => OpenWorker<Recording>;
   /** Over the pool's life; the next crash fails the run. */
   maxRestarts?: number;
   onRestart?: (worker: number, reason: string) => void;
@@ -25,42 +39,43 @@ export function poolSize(asked: number | null, cores: number): number {
   return Math.max(1, Math.min(workerCap, wanted || 1));
 }
 
-interface Job {
-  task: Task<unknown>;
+interface Job<Recording extends KnownRecording> {
+  task: Task<unknown, Recording>;
   resolve: (value: unknown) => void;
-  reject: (reason: RunError) => void;
+  reject: (reason: unknown) => void;
 }
 
-interface Seat {
-  worker: Worker;
-  api: EngineApi;
-  job: Job | null;
+interface Seat<Recording extends KnownRecording> {
+  worker: OpenWorker<Recording>;
+  job: Job<Recording> | null;
 }
 
 /**
  * Engine workers and the queue before them. The workers keep no state, so a part whose worker
  * broke is simply done again by a fresh one.
  */
-export class WorkerPool {
+export class WorkerPool<
+  Recording extends KnownRecording = RecordingInput,
+> implements TaskPool<Recording> {
   readonly size: number;
-  readonly #options: PoolOptions;
-  readonly #seats: Seat[];
-  readonly #queue: Job[] = [];
+  readonly #options: PoolOptions<Recording>;
+  readonly #seats: Seat<Recording>[];
+  readonly #queue: Job<Recording>[] = [];
   #restarts = 0;
   #paused = false;
-  #ended: RunError | null = null;
+  #ended: PoolError | null = null;
 
-  constructor(options: PoolOptions) {
+  constructor(options: PoolOptions<Recording>) {
     this.size = options.size;
     this.#options = options;
     this.#seats = Array.from({ length: options.size }, (_, index) => this.#open(index));
   }
 
-  /** Queues one part. Rejects with a RunError when the engine refuses it or the pool ends. */
-  run<T>(task: Task<T>): Promise<T> {
+  /** Queues one part. Rejects with the engine's own error, or a PoolError when the pool ends. */
+  run<T>(task: Task<T, Recording>): Promise<T> {
     return new Promise<T>((resolve, reject) => {
       if (this.#ended) return reject(this.#ended);
-      this.#queue.push({ task, resolve: resolve as Job['resolve'], reject });
+      this.#queue.push({ task, resolve: resolve as Job<Recording>['resolve'], reject });
       this.#dispatch();
     });
   }
@@ -76,7 +91,7 @@ export class WorkerPool {
   }
 
   /** Ends every worker at once; whatever was queued or under way rejects with `reason`. */
-  end(reason = new RunError('cancelled', 'The run was stopped.')): void {
+  end(reason = new PoolError('cancelled', 'The run was stopped.')): void {
     if (this.#ended) return;
     this.#ended = reason;
     for (const seat of this.#seats) {
@@ -87,21 +102,18 @@ export class WorkerPool {
     for (const job of this.#queue.splice(0)) job.reject(reason);
   }
 
-  #open(index: number): Seat {
-    const worker = this.#options.createWorker();
-    const crashed = (reason: string): void => this.#restart(index, worker, reason);
-    worker.addEventListener('error', (event) => crashed(event.message || 'it could not be loaded'));
-    worker.addEventListener('messageerror', () => crashed('its answer could not be read'));
-    return { worker, api: wrap<EngineWorkerApi>(worker), job: null };
+  #open(index: number): Seat<Recording> {
+    const worker = this.#options.createWorker((reason) => this.#restart(index, worker, reason));
+    return { worker, job: null };
   }
 
-  #restart(index: number, broken: Worker, reason: string): void {
+  #restart(index: number, broken: OpenWorker<Recording>, reason: string): void {
     const seat = this.#seats[index];
     if (this.#ended || seat?.worker !== broken) return;
     broken.terminate();
     if (++this.#restarts > (this.#options.maxRestarts ?? 3)) {
       const message = `Workers broke ${this.#restarts} times, the last time because ${reason}.`;
-      return this.end(new RunError('worker-crashed', message));
+      return this.end(new PoolError('worker-crashed', message));
     }
     this.#options.onRestart?.(index, reason);
     this.#seats[index] = this.#open(index);
@@ -118,14 +130,14 @@ export class WorkerPool {
     });
   }
 
-  async #work(seat: Seat, index: number, job: Job): Promise<void> {
+  async #work(seat: Seat<Recording>, index: number, job: Job<Recording>): Promise<void> {
     seat.job = job;
     try {
-      const value = await job.task(seat.api, index);
+      const value = await job.task(seat.worker.api, index);
       // A seat that was restarted meanwhile has handed its job on.
       if (seat.job === job && this.#seats[index] === seat) job.resolve(value);
     } catch (thrown) {
-      if (this.#seats[index] === seat) job.reject(asRunError(thrown));
+      if (this.#seats[index] === seat) job.reject(thrown);
     } finally {
       seat.job = null;
       this.#dispatch();

@@ -1,14 +1,9 @@
 import { measureOf, type MeasureId } from '$engine';
-import type { ResultAxes, ResultEdge } from '$lib/model/result';
 import { claimedLagRad, isNearZeroLag, lagMs } from '$lib/result/zero-lag';
+import type { ResultAxes, ResultEdge } from './result';
+import type { TableColumn } from './result-table';
 
-export interface EdgeColumn {
-  name: string;
-  description: string;
-  /** SI or accepted unit; absent for labels, counts and ratios. */
-  units?: string;
-  value(edge: ResultEdge, axes: ResultAxes): string | number | null;
-}
+export type EdgeColumn = TableColumn<ResultEdge>;
 
 const site = (end: 0 | 1) => (edge: ResultEdge, axes: ResultAxes) =>
   axes.sites[axes.pairs[edge.pair]![end]]!;

@@ -1,23 +1,26 @@
 import { proxy } from 'comlink';
-import { drawsByteLength, layoutOf } from '$engine';
-import type { Axes, Epoch, LostEpoch, PairBlock, Plan } from '$engine';
-import type { RecordingInput, SharedDraws, SharedPhases } from '$workers/protocol';
-import type { WorkerPool } from './pool';
+import { drawsByteLength, layoutOf } from '../engine';
+import type { Axes, Epoch, LostEpoch, PairBlock, Plan } from '../engine';
+import type { KnownRecording, RecordingInput, SharedDraws, SharedPhases } from '../protocol';
+import type { TaskPool } from './pool';
 import { partSize, splitRange, type Range } from './split';
 
 /** The steps of a run, each spread over the pool. No step knows the page or the server. */
 
-export interface StepContext {
-  pool: WorkerPool;
+export interface StepContext<Recording extends KnownRecording = RecordingInput> {
+  pool: TaskPool<Recording>;
   plan: Plan;
   axes: Axes;
-  recordings: RecordingInput[];
+  recordings: Recording[];
   /** What a worker does just now, for its line on the page. */
   onWorker: (worker: number, doing: string) => void;
 }
 
 /** Epochs whose samples break a limit of the plan. */
-export async function screen(context: StepContext, epochs: Epoch[]): Promise<LostEpoch[]> {
+export async function screen<Recording extends KnownRecording>(
+  context: StepContext<Recording>,
+  epochs: Epoch[],
+): Promise<LostEpoch[]> {
   const { pool, plan, recordings, onWorker } = context;
   const size = partSize(epochs.length, pool.size, 4, 200);
   const parts = splitRange({ from: 0, to: epochs.length }, size);
@@ -33,8 +36,8 @@ export async function screen(context: StepContext, epochs: Epoch[]): Promise<Los
 }
 
 /** Unit phasors of the kept epochs in memory that all workers share. */
-export async function phases(
-  context: StepContext,
+export async function phases<Recording extends KnownRecording>(
+  context: StepContext<Recording>,
   kept: Epoch[],
   onDone: (epochs: number) => void,
 ): Promise<SharedPhases> {
@@ -60,8 +63,8 @@ export async function phases(
 }
 
 /** What each permutation shuffles. */
-export async function draws(
-  { pool, plan, axes, onWorker }: StepContext,
+export async function draws<Recording extends KnownRecording>(
+  { pool, plan, axes, onWorker }: StepContext<Recording>,
   { epochsA, epochsB }: SharedPhases,
 ): Promise<SharedDraws> {
   const counts = { epochsA, epochsB, axes };
@@ -86,18 +89,19 @@ const mostPairsInBlock = 32;
  * Every permutation of the pairs in `ranges`, in blocks: a feature's z needs the mean and sd over
  * all of its surrogates, so a block of pairs carries all permutations.
  */
-export async function pairBlocks(
-  context: StepContext,
+export async function pairBlocks<Recording extends KnownRecording>(
+  context: StepContext<Recording>,
   ranges: Range[],
   shared: { phases: SharedPhases; draws: SharedDraws },
   on: {
     pair: (block: Range, pairsDone: number, worker: number) => void;
     block: (block: PairBlock, worker: number) => void;
   },
+  pairsInBlock?: number,
 ): Promise<void> {
   const { pool, plan, axes, onWorker } = context;
   const left = ranges.reduce((sum, { from, to }) => sum + to - from, 0);
-  const size = partSize(left, pool.size, 8, mostPairsInBlock);
+  const size = pairsInBlock ?? partSize(left, pool.size, 8, mostPairsInBlock);
   const blocks = ranges.flatMap((range) => splitRange(range, size));
   await Promise.all(
     blocks.map((range) =>

@@ -1,5 +1,5 @@
 import { open } from 'node:fs/promises';
-import type { ByteSource } from '$engine';
+import type { ByteSource } from './engine';
 
 /** A file as the reader's byte source; close it when done. */
 export async function openFileSource(
