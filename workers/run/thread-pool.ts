@@ -1,6 +1,5 @@
-import { Worker } from 'node:worker_threads';
-import { wrap } from 'comlink';
-import nodeEndpoint from 'comlink/dist/esm/node-adapter';
+import { MessageChannel, Worker } from 'node:worker_threads';
+import { wrap, type Endpoint } from 'comlink';
 import type { EngineWorkerApi, ThreadRecording } from '../protocol';
 import { WorkerPool } from './pool';
 
@@ -9,11 +8,14 @@ export function threadPool(size: number, script: URL): WorkerPool<ThreadRecordin
   return new WorkerPool<ThreadRecording>({
     size,
     createWorker(onBroken) {
-      const thread = new Worker(script, { name: 'engine' });
+      const { port1: here, port2: there } = new MessageChannel();
+      const workerData = { port: there };
+      const thread = new Worker(script, { name: 'engine', workerData, transferList: [there] });
       thread.on('error', (error) => onBroken(error.message));
-      thread.on('messageerror', () => onBroken('its answer could not be read'));
       thread.on('exit', () => onBroken('it ended'));
-      const api = wrap<EngineWorkerApi<ThreadRecording>>(nodeEndpoint(thread));
+      here.on('messageerror', () => onBroken('its answer could not be read'));
+      // Node's ports are event targets too, which its types leave unsaid.
+      const api = wrap<EngineWorkerApi<ThreadRecording>>(here as unknown as Endpoint);
       return { api, terminate: () => void thread.terminate() };
     },
   });
