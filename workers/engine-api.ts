@@ -56,7 +56,7 @@ export function engineApi<Recording extends KnownRecording>(
     },
 
     async conclude(plan, axes, counts, blocks) {
-      const maps = mergeBlocks(blocks, axes, plan.test.permutations);
+      const maps = mergeBlocks(blocks, axes, plan.test);
       const outcome = await conclude(plan, axes, counts, maps);
       // Comlink moves what is listed for the answer itself; a part's own list would be ignored.
       return Comlink.transfer({ maps, outcome }, buffersOf(maps));

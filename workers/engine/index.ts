@@ -30,9 +30,10 @@ export { corrections, correctionOf, correctionIds, type CorrectionId } from './c
 export type { ClaimMaps, Correction } from './correct/correction';
 export { drawPermutations, drawsByteLength } from './null/draws';
 export { computePairs, type DrawData, type PhaseData } from './pairs';
-export { mergeBlocks } from './pair-block';
+export { mergeBlocks, partLists } from './pair-block';
 export { histogramBins } from './histogram';
 export { ties } from './ties';
+export { planParts } from './correct/plan-parts';
 export { conclude, concludeFrom, type Claims } from './correct/conclude';
 export { checkMaps } from './correct/check-maps';
 export { clopperPearson } from './correct/clopper-pearson';

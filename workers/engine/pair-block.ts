@@ -1,4 +1,6 @@
+import { planParts } from './correct/plan-parts';
 import { histogramBins } from './histogram';
+import type { Plan } from './plan';
 import type { Axes, PairBlock, RunMaps } from './types';
 
 /** An empty block: zero maps, maxima that anything exceeds. */
@@ -24,6 +26,7 @@ export function newBlock(
     histogram: new Uint16Array(cells * histogramBins.count),
     maxStatistic: new Float32Array(permutations).fill(-Infinity),
     maxClusterMass: new Float32Array(permutations),
+    parts: {},
   };
 }
 
@@ -41,10 +44,12 @@ const mapNames = [
 ] as const;
 
 /**
- * Puts blocks together, in any order: maps side by side, distributions by their maxima.
+ * Puts blocks together, in any order: maps side by side, distributions by their maxima, and the
+ * parts of single corrections as these say.
  * @throws RangeError when blocks overlap, leave pairs out, or do not have the plan's shape
  */
-export function mergeBlocks(blocks: PairBlock[], axes: Axes, permutations: number): RunMaps {
+export function mergeBlocks(blocks: PairBlock[], axes: Axes, test: Plan['test']): RunMaps {
+  const { permutations } = test;
   const pairs = axes.pairs.length;
   const whole = newBlock(axes, { from: 0, to: pairs }, permutations);
   let next = 0;
@@ -61,6 +66,12 @@ export function mergeBlocks(blocks: PairBlock[], axes: Axes, permutations: numbe
     addBlock(block, whole, axes, permutations);
   }
   if (next !== pairs) throw new RangeError(`mergeBlocks: ${next} of ${pairs} pairs are there`);
+  for (const [id, part] of planParts(test)) {
+    whole.parts[id] = part.merge(
+      blocks.map((block) => shareOf(block, id)),
+      { axes, test },
+    );
+  }
   return whole;
 }
 
@@ -81,4 +92,19 @@ function addBlock(block: PairBlock, whole: RunMaps, axes: Axes, permutations: nu
     whole.maxStatistic[p] = Math.max(whole.maxStatistic[p], block.maxStatistic[p]);
     whole.maxClusterMass[p] = Math.max(whole.maxClusterMass[p], block.maxClusterMass[p]);
   }
+}
+
+function shareOf(block: PairBlock, id: string): Float32Array {
+  const share = block.parts[id];
+  if (share) return share;
+  throw new RangeError(
+    `mergeBlocks: the block at pair ${block.firstPair} lacks what ${id} needs of it`,
+  );
+}
+
+/** The merged parts as plain lists, for JSON. */
+export function partLists(maps: Pick<RunMaps, 'parts'>): Record<string, number[]> {
+  return Object.fromEntries(
+    Object.entries(maps.parts).map(([id, values]) => [id, Array.from(values)]),
+  );
 }

@@ -7,6 +7,7 @@ import { histogramBins } from './histogram';
 import { PairNull, type NullSettings } from './null/pair-null';
 import { nullModelOf } from './null/registry';
 import { newBlock } from './pair-block';
+import { partsWork } from './parts-work';
 import type { Plan } from './plan';
 import { runInput } from './run-input';
 import type { Axes, PairBlock } from './types';
@@ -49,14 +50,18 @@ export function computePairs(
   const run = runInput(plan, axes, phases, draws);
   const block = newBlock(axes, range, plan.test.permutations);
   withKernels((kernels) => {
-    const nulls = new PairNull(nullModelOf(plan.null), run, kernels, nullSettings(plan, axes));
+    const parts = partsWork(plan, axes, run.featureCount);
+    const settings = { ...nullSettings(plan, axes), ...parts.visitor };
+    const nulls = new PairNull(nullModelOf(plan.null), run, kernels, settings);
     for (let pair = range.from; pair < range.to; pair++) {
       const [j, k] = axes.pairs[pair];
+      parts.begin(pair, nulls);
       nulls.add(j, k);
       storePair(nulls, pairPart(block, pair - range.from, run.featureCount));
       onPair(pair - range.from + 1);
     }
     storeMaxima(nulls, block);
+    block.parts = parts.finish();
   });
   return block;
 }
@@ -98,7 +103,10 @@ function nullSettings(plan: Plan, axes: Axes): NullSettings {
   };
 }
 
-type PairPart = Omit<PairBlock, 'firstPair' | 'pairCount' | 'maxStatistic' | 'maxClusterMass'>;
+type PairPart = Omit<
+  PairBlock,
+  'firstPair' | 'pairCount' | 'maxStatistic' | 'maxClusterMass' | 'parts'
+>;
 
 /** Views of one pair's rows of a block. */
 function pairPart(block: PairBlock, index: number, featureCount: number): PairPart {

@@ -2,6 +2,7 @@ import { transfer } from 'comlink';
 import {
   axesOf,
   engineVersion,
+  partLists,
   planEpochs,
   planHash,
   withoutLost,
@@ -44,6 +45,7 @@ export interface WholeRun {
     lost: LostEpoch[];
     maxStatistic: number[];
     clusterMass: number[];
+    parts: Record<string, number[]>;
     timings: Timings;
   };
 }
@@ -111,6 +113,7 @@ export async function wholeRun<Recording extends KnownRecording>(
       lost,
       maxStatistic: Array.from(maps.maxStatistic),
       clusterMass: Array.from(maps.maxClusterMass),
+      parts: partLists(maps),
       timings,
     },
   };

@@ -1,5 +1,5 @@
 import { transfer } from 'comlink';
-import { axesOf, engineVersion, planEpochs, withoutLost } from '$engine';
+import { axesOf, engineVersion, partLists, planEpochs, withoutLost } from '$engine';
 import type { Axes, Epoch, LostEpoch, PairBlock, Plan, RecordingFacts } from '$engine';
 import type { RunChange, RunSummary, Timings } from '$lib/model/run';
 import type { RecordingInput, SharedPhases } from '$workers/protocol';
@@ -310,6 +310,7 @@ export class RunController {
       lost: epochs.lost,
       maxStatistic: Array.from(maps.maxStatistic),
       clusterMass: Array.from(maps.maxClusterMass),
+      parts: partLists(maps),
       timings: this.#timings,
     };
     await upload(runId, axes, { maps, phases: angles }, summary, (bytes, total) => {

@@ -3,6 +3,7 @@ import { beforeAll, describe, expect, test } from 'vitest';
 import {
   computePairs,
   conclude,
+  correctionIds,
   concludeFrom,
   drawPermutations,
   drawsByteLength,
@@ -27,9 +28,7 @@ const anyOrder = <T>(list: T[]) =>
 const permutations = 399;
 
 const everything = {
-  corrections: ['max-statistic', 'cluster-mass', 'benjamini-hochberg'] as (
-    'max-statistic' | 'cluster-mass' | 'benjamini-hochberg'
-  )[],
+  corrections: [...correctionIds],
   clusterFormingZ: 1.5,
   alpha: 0.05,
   permutations,
@@ -71,7 +70,7 @@ describe.each(nullIds)('a run under %s', (nullId) => {
         const blocks = pairRanges.map((range) =>
           computePairs(run.plan, run.axes, range, phases, { buffer: draws }),
         );
-        const maps = mergeBlocks(blocks, run.axes, permutations);
+        const maps = mergeBlocks(blocks, run.axes, run.plan.test);
         expect(await conclude(run.plan, run.axes, run.counts, maps)).toEqual(expected);
       }),
       { numRuns: 15 },
@@ -98,8 +97,8 @@ describe.each(nullIds)('a run under %s', (nullId) => {
 
   test('is concluded again from what a server is sent', () => {
     const { z, upper, lower, maxStatistic, maxClusterMass, ...rest } = mapsOf(run);
-    const { observedA, observedB, lagA, lagB, nullSd } = rest;
-    const sent = { z, upper, lower, maxStatistic, maxClusterMass };
+    const { observedA, observedB, lagA, lagB, nullSd, parts } = rest;
+    const sent = { z, upper, lower, maxStatistic, maxClusterMass, parts };
     const again = concludeFrom(run.plan, run.axes, {
       ...structuredClone(sent),
       ...{ observedA, observedB, lagA, lagB, nullSd },
@@ -141,14 +140,16 @@ describe('mergeBlocks', () => {
   const draws = { buffer: drawAll(run) };
   const block = (from: number, to: number) =>
     computePairs(run.plan, run.axes, { from, to }, phases, draws);
-  const merge = (blocks: PairBlock[]) => () => mergeBlocks(blocks, run.axes, permutations);
+  const merge = (blocks: PairBlock[]) => () => mergeBlocks(blocks, run.axes, run.plan.test);
 
   test('refuses gaps, overlaps, missing pairs and blocks of another shape', () => {
     expect(merge([block(0, 2), block(3, 6)])).toThrow('begins at pair 3 where pair 2 is next');
     expect(merge([block(0, 3), block(2, 6)])).toThrow('begins at pair 2 where pair 3 is next');
     expect(merge([block(0, 5)])).toThrow('5 of 6 pairs are there');
     expect(merge([{ ...block(0, 6), z: new Float32Array(3) }])).toThrow('z of the block at pair 0');
-    expect(() => mergeBlocks([block(0, 6)], run.axes, permutations - 1)).toThrow('maxStatistic');
+    expect(() =>
+      mergeBlocks([block(0, 6)], run.axes, { ...run.plan.test, permutations: permutations - 1 }),
+    ).toThrow('maxStatistic');
   });
 });
 

@@ -99,7 +99,7 @@ export function mapsOf(run: TinyRun, draws: ArrayBufferLike = drawAll(run)): Run
   const range = { from: 0, to: run.axes.pairs.length };
   const phases = { buffer: run.phases, ...run.counts };
   const block = computePairs(run.plan, run.axes, range, phases, { buffer: draws });
-  return mergeBlocks([block], run.axes, run.plan.test.permutations);
+  return mergeBlocks([block], run.axes, run.plan.test);
 }
 
 export function outcomeOf(run: TinyRun, maps: RunMaps = mapsOf(run)): Promise<Outcome> {

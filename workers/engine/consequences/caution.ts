@@ -26,6 +26,9 @@ export type CautionCode =
   | 'bad-site'
   | 'line-frequency'
   | 'measure'
+  | 'claim-of-neighbours'
+  | 'components-of-few-pairs'
+  | 'components-memory'
   | 'cluster-claim'
   | 'false-discovery-dependence';
 

@@ -1,6 +1,7 @@
 import type { Caution, CautionInput, CautionRule } from './caution';
 import * as epochs from './epoch-cautions';
 import * as signal from './signal-cautions';
+import * as network from './network-cautions';
 import * as test from './test-cautions';
 
 export type { Caution, CautionCode } from './caution';
@@ -10,6 +11,8 @@ const rules: CautionRule[] = [
   epochs.tooFewEpochs,
   signal.tooMuchMemory,
   test.windowTooLong,
+  network.componentsOfFewPairs,
+  network.componentsMemory,
   test.fewPermutations,
   test.fewArrangements,
   test.fewForMaxima,
@@ -29,6 +32,7 @@ const rules: CautionRule[] = [
   test.measureCaution,
   test.coarseP,
   test.clusterClaim,
+  test.claimOfNeighbours,
   test.falseDiscoveryDependence,
 ];
 

@@ -29,6 +29,7 @@ export function concludeFrom(plan: Plan, axes: Axes, maps: ClaimMaps): Claims {
     maps,
     tail,
     alpha,
+    clusterFormingZ,
     permutations,
     p,
     clusters,
@@ -49,5 +50,5 @@ export async function conclude(
   maps: ClaimMaps,
 ): Promise<Outcome> {
   const claims = concludeFrom(plan, axes, maps);
-  return { ...claims, digest: await runDigest(plan, counts, maps, claims.clusters) };
+  return { ...claims, digest: await runDigest(plan, counts, maps, claims) };
 }

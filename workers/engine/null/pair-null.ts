@@ -1,6 +1,6 @@
 import { clusterScratchLength } from '../../kernels/cluster-masses';
 import { groupCount, groupFeatures, paddedFeatures } from '../../kernels/group';
-import type { NullMapShape } from '../../kernels/group-maps';
+import { standardised, type NullMapShape } from '../../kernels/group-maps';
 import { leastFloatFrom, mostFloatTo } from '../../kernels/group-moments';
 import type { ArrayPlan, Arrays, Kernels } from '../../kernels/kernels';
 import { MeasureObserver, newObserved, type Observed, type Observer } from '../observe';
@@ -23,6 +23,11 @@ export interface NullSettings extends Pick<
   timeCount: number;
   /** Map values held at once; nothing that is computed depends on it. */
   tileValues?: number;
+  /**
+   * Visits a pair's null maps, a range of permutations at a time and in order, laid out as
+   * `NullMapRows` says of z. The pair's observed statistic, moments and counts are final by then.
+   */
+  onMaps?: (range: PermutationRange, z: Float32Array) => void;
 }
 
 /**
@@ -90,6 +95,12 @@ export class PairNull {
     this.best = arrays.best.fill(-Infinity);
     this.masses = arrays.masses;
     this.histogram = arrays.histogram;
+  }
+
+  /** The observed z of a feature. */
+  observedZ(feature: number): number {
+    const state = this.groups[Math.floor(feature / groupFeatures)];
+    return standardised(this.observed[feature], state.map, feature % groupFeatures);
   }
 
   /** Works a pair out: its own numbers are overwritten, maxima over pairs raised. */
@@ -210,6 +221,7 @@ export class PairNull {
     const { frequencyCount, timeCount } = this.settings;
     const map = { rows: to - from, frequencyCount, timeCount, shape };
     this.kernels.addClusterMasses(arrays, arrays.masses.subarray(from), arrays.scratch, map);
+    this.settings.onMaps?.({ from, to }, arrays.z);
   }
 }
 

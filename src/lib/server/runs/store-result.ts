@@ -130,6 +130,9 @@ async function readMaps(
     lower: await read<Uint32Array>('lower'),
     maxStatistic: Float32Array.from(summary.maxStatistic),
     maxClusterMass: Float32Array.from(summary.clusterMass),
+    parts: Object.fromEntries(
+      Object.entries(summary.parts ?? {}).map(([id, list]) => [id, Float32Array.from(list)]),
+    ),
   };
   return { maps, sha256s };
 }

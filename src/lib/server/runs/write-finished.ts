@@ -1,5 +1,5 @@
 import type { Insertable } from 'kysely';
-import type { Cluster, Edge, Outcome } from '$engine';
+import { planParts, type Cluster, type Edge, type Outcome } from '$engine';
 import type { RunSummary } from '$lib/model/run';
 import { resultEdgeOf } from '$lib/model/result-edge';
 import type { RunFacts } from '$lib/model/run-facts';
@@ -113,23 +113,31 @@ function factsOf({ expectation, summary, outcome, locked }: Finished): RunFacts 
 
 function nullSummaries(
   owner: Owner,
-  { summary, outcome }: Finished,
+  { summary, outcome, locked }: Finished,
 ): Insertable<Database['nullSummary']>[] {
   const critical = (correction: string): number | null =>
     outcome.corrections.find(({ id }) => id === correction)?.criticalValue ?? null;
   return [
     {
       ...owner,
-      kind: 'max-statistic' as const,
+      kind: 'max-statistic',
       ...moments(summary.maxStatistic),
       criticalValue: critical('max-statistic'),
     },
     {
       ...owner,
-      kind: 'cluster-mass' as const,
+      kind: 'cluster-mass',
       ...moments(summary.clusterMass),
       criticalValue: critical('cluster-mass'),
     },
+    ...planParts(locked.plan.test)
+      .filter(([, part]) => part.isMaxima)
+      .map(([id]) => ({
+        ...owner,
+        kind: id,
+        ...moments(summary.parts?.[id] ?? []),
+        criticalValue: critical(id),
+      })),
   ];
 }
 
