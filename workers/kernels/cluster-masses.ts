@@ -1,5 +1,4 @@
 import { clusterForest, joinClusters, releaseClusters } from './clusters';
-import { groupFeatures } from './group';
 import type { NullMapRows, NullMapShape } from './group-maps';
 
 /** Elements of f64 that the compiled kernel joins runs in: four arrays of at most T / 2 runs a row. */
@@ -17,7 +16,7 @@ export function clusterScratchLength(frequencyCount: number, timeCount: number):
  * Source: Maris and Oostenveld 2007.
  */
 export function addClusterMasses(
-  maps: Pick<NullMapRows, 'z' | 'positive' | 'negative'>,
+  maps: Pick<NullMapRows, 'beyond' | 'positive' | 'negative'>,
   masses: Float32Array,
   _scratch: Float64Array,
   map: { rows: number; frequencyCount: number; timeCount: number; shape: NullMapShape },
@@ -28,24 +27,17 @@ export function addClusterMasses(
   const points = new Int32Array(featureCount);
   const forest = clusterForest(featureCount);
   for (let row = 0; row < rows; row++) {
-    for (let x = 0; x < featureCount; x++) {
-      z[x] = maps.z[((x >> 3) * rows + row) * groupFeatures + (x & 7)];
-    }
-    for (const bits of signsOf(maps, shape.tailSign)) {
+    for (const sign of [1, -1]) {
+      if (sign * shape.tailSign < 0) continue;
+      const bits = sign > 0 ? maps.positive : maps.negative;
       const pointCount = marked(bits, row * shape.bitStride, featureCount, points);
+      const first = sign > 0 ? row * shape.stride : (row + 1) * shape.stride - 1;
+      for (let i = 0; i < pointCount; i++) z[points[i]] = maps.beyond[first + sign * i];
       const mass = joinClusters(z, 0, points, forest, { pointCount, timeCount });
       releaseClusters(points, pointCount, forest);
       if (mass > masses[row]) masses[row] = mass;
     }
   }
-}
-
-function signsOf(
-  { positive, negative }: Pick<NullMapRows, 'positive' | 'negative'>,
-  tailSign: -1 | 0 | 1,
-): Uint8Array[] {
-  if (tailSign > 0) return [positive];
-  return tailSign < 0 ? [negative] : [positive, negative];
 }
 
 /** Lists the points whose bits are set, and counts them. */

@@ -71,12 +71,14 @@ export interface KernelExports extends WebAssembly.Exports {
     center: number,
     inverse: number,
     rest: number,
-    z: number,
+    beyond: number,
+    counts: number,
     positive: number,
     negative: number,
     best: number,
     histogram: number,
     rows: number,
+    stride: number,
     bitStride: number,
     features: number,
     formingZ: number,
@@ -87,7 +89,7 @@ export interface KernelExports extends WebAssembly.Exports {
     mayFill: number,
   ): void;
   addClusterMasses(
-    z: number,
+    beyond: number,
     positive: number,
     negative: number,
     masses: number,
@@ -95,6 +97,7 @@ export interface KernelExports extends WebAssembly.Exports {
     rows: number,
     frequencyCount: number,
     timeCount: number,
+    stride: number,
     bitStride: number,
     tailSign: number,
   ): void;

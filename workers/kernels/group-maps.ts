@@ -19,8 +19,13 @@ export function standardised(value: number, scale: MapScale, x: number): number 
 
 /** Null maps of one pair, row after row, that groups of features write their part of. */
 export interface NullMapRows {
-  /** `z[(group * rows + row) * 8 + feature of the group]`: written and read in long stretches. */
-  z: Float32Array;
+  /**
+   * The z beyond the forming threshold, in order of feature: positive ones from the front of a row,
+   * `[row * stride + i]`, negative ones from its end backwards.
+   */
+  beyond: Float32Array;
+  /** How many of them there are so far: `[row * 2]` positive, `[row * 2 + 1]` negative. */
+  counts: Uint32Array;
   /** Bit x of a row says whether z is beyond the forming threshold: `[row * bitStride + byte]`. */
   positive: Uint8Array;
   negative: Uint8Array;
@@ -29,6 +34,8 @@ export interface NullMapRows {
 }
 
 export interface NullMapShape {
+  /** Elements of `beyond` from one row to the next: all features, in whole groups. */
+  stride: number;
   /** Bytes of bits from one row to the next, a multiple of 8. */
   bitStride: number;
   clusterFormingZ: number;
@@ -46,7 +53,8 @@ export interface NullMapShape {
  * Turns surrogates of eight features into z, marks what is beyond the forming threshold, keeps the
  * largest tail statistic, and counts z into each feature's histogram.
  * Layout: `values[row * 8 + feature]`, `histogram[feature * binCount + bin]`, kept at 65535 when
- * full; out see `NullMapRows`, whose arrays begin at the group (z), its byte (bits) and its row.
+ * full; out see `NullMapRows`, whose arrays begin
+ * at the row, and bits at the group's byte. Groups of a row come in order of feature.
  * Features from `group.features` on repeat another one and are left out of bits; their histograms
  * are scratch. Mutates all of `out` and `histogram`; allocates nothing. z errs by less than 3e-7 of
  * itself.
@@ -60,7 +68,7 @@ export function addGroupMaps(
   group: { rows: number; features: number; shape: NullMapShape },
 ): void {
   const { rows, features, shape } = group;
-  const { bitStride, clusterFormingZ, tailSign } = shape;
+  const { stride, bitStride, clusterFormingZ, tailSign } = shape;
   const { binCount, binsPerUnit, binOffset } = shape;
   const forming = Math.fround(clusterFormingZ);
   for (let row = 0; row < rows; row++) {
@@ -68,9 +76,14 @@ export function addGroupMaps(
     let negative = 0;
     for (let x = 0; x < groupFeatures; x++) {
       const z = standardised(values[row * groupFeatures + x], scale, x);
-      out.z[row * groupFeatures + x] = z;
-      if (x < features && z > forming) positive |= 1 << x;
-      if (x < features && z < -forming) negative |= 1 << x;
+      if (x < features && z > forming) {
+        positive |= 1 << x;
+        out.beyond[row * stride + out.counts[2 * row]++] = z;
+      }
+      if (x < features && z < -forming) {
+        negative |= 1 << x;
+        out.beyond[(row + 1) * stride - 1 - out.counts[2 * row + 1]++] = z;
+      }
       const statistic = tailSign === 0 ? Math.abs(z) : tailSign * z;
       const best = row * 4 + (x & 3);
       if (statistic > out.best[best]) out.best[best] = statistic;

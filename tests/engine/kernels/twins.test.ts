@@ -230,6 +230,7 @@ function nullMaps(
   const featureCount = map.frequencyCount * map.timeCount;
   const stride = paddedFeatures(featureCount);
   const shape: NullMapShape = {
+    stride,
     bitStride: Math.ceil(stride / 64) * 8,
     clusterFormingZ: map.clusterFormingZ,
     tailSign: map.tailSign,
@@ -243,7 +244,8 @@ function nullMaps(
     center: ['f32', 8],
     inverse: ['f32', 8],
     rest: ['f32', 8],
-    z: ['f32', rowCount * stride],
+    beyond: ['f32', rowCount * stride],
+    counts: ['u32', rowCount * 2],
     positive: ['u8', rowCount * shape.bitStride],
     negative: ['u8', rowCount * shape.bitStride],
     best: ['f32', rowCount * 4],
@@ -258,7 +260,8 @@ function nullMaps(
     fill(a.rest, () => next() * 1e-6);
     fill(a.inverse, next);
     const out = {
-      z: a.z.subarray(first * rowCount),
+      beyond: a.beyond,
+      counts: a.counts,
       positive: a.positive.subarray(first / 8),
       negative: a.negative.subarray(first / 8),
       best: a.best,
@@ -274,7 +277,8 @@ function nullMaps(
     shape,
   });
   return {
-    z: [...a.z],
+    beyond: [...a.beyond],
+    counts: [...a.counts],
     positive: [...a.positive],
     negative: [...a.negative],
     best: [...a.best],

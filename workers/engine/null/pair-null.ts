@@ -71,7 +71,7 @@ export class PairNull {
     const count = groupCount(run.featureCount);
     const stride = paddedFeatures(run.featureCount);
     this.isDifference = model.statistic === 'difference';
-    this.shape = { ...settings, bitStride: Math.ceil(stride / 64) * 8, permutations };
+    this.shape = { ...settings, stride, bitStride: Math.ceil(stride / 64) * 8, permutations };
     const most = Math.floor((settings.tileValues ?? mostTileValues) / stride);
     const rows = Math.max(1, Math.min(permutations, most));
     this.tiles = tilesOf(permutations, rows);
@@ -204,9 +204,11 @@ export class PairNull {
     const { arrays, shape } = this;
     const feature = group * groupFeatures;
     const rows = to - from;
+    if (group === 0) arrays.marks.fill(0);
     const features = Math.min(groupFeatures, this.run.featureCount - feature);
     const out = {
-      z: arrays.z.subarray(feature * rows),
+      beyond: arrays.beyond,
+      counts: arrays.marks,
       positive: arrays.positive.subarray(group),
       negative: arrays.negative.subarray(group),
       best: arrays.best.subarray(from * 4),
@@ -247,7 +249,8 @@ function nullArrays(
     ...statePlan(groupCount(run.featureCount) * (isDifference ? 1 : 3)),
     first: ['f32', rows * groupFeatures],
     second: ['f32', isDifference ? 0 : rows * groupFeatures],
-    z: ['f32', rows * stride],
+    beyond: ['f32', rows * stride],
+    marks: ['u32', rows * 2],
     positive: ['u8', rows * shape.bitStride],
     negative: ['u8', rows * shape.bitStride],
     histogram: ['u16', stride * shape.binCount],

@@ -35,18 +35,43 @@ function countToFull(histogram: usize, bins: u64, step: usize): void {
   }
 }
 
+/** The z of one row's eight features, while they are picked from. */
+const eightZ = memory.data(32, 16);
+
+/** Appends marked z: positive ones from the front of the row, negative ones from its end. */
+function append(row: usize, counts: usize, bytes: usize, marks: i32): void {
+  let up = marks & 0xff;
+  if (up) {
+    let count = <usize>load<u32>(counts);
+    for (; up; up &= up - 1, count++) {
+      store<f32>(row + (count << 2), load<f32>(eightZ + ((<usize>ctz(up)) << 2)));
+    }
+    store<u32>(counts, <u32>count);
+  }
+  let down = marks >> 8;
+  if (down) {
+    let count = <usize>load<u32>(counts, 4);
+    for (; down; down &= down - 1, count++) {
+      store<f32>(row + bytes - 4 - (count << 2), load<f32>(eightZ + ((<usize>ctz(down)) << 2)));
+    }
+    store<u32>(counts, <u32>count, 4);
+  }
+}
+
 /** Twin: ../group-maps.ts. */
 export function addGroupMaps(
   values: usize,
   center: usize,
   inverse: usize,
   rest: usize,
-  z: usize,
+  beyond: usize,
+  counts: usize,
   positive: usize,
   negative: usize,
   best: usize,
   histogram: usize,
   rows: i32,
+  stride: i32,
   bitStride: i32,
   features: i32,
   formingZ: f32,
@@ -64,7 +89,8 @@ export function addGroupMaps(
   const r1 = v128.load(rest, 16);
   const above = f32x4.splat(formingZ);
   const below = f32x4.splat(-formingZ);
-  const keep = (1 << features) - 1;
+  const keep = ((1 << features) - 1) * 0x101;
+  const beyondBytes = (<usize>stride) << 2;
   const perUnit = f32x4.splat(binsPerUnit);
   const offset = f32x4.splat(binOffset);
   const last = f32x4.splat(<f32>(binCount - 1));
@@ -76,13 +102,16 @@ export function addGroupMaps(
   for (; values < end; values += 32) {
     const a = standardise(v128.load(values), c0, i0, r0);
     const b = standardise(v128.load(values, 16), c1, i1, r1);
-    v128.store(z, a);
-    v128.store(z, b, 16);
     const up = i16x8.narrow_i32x4_s(f32x4.gt(a, above), f32x4.gt(b, above));
     const down = i16x8.narrow_i32x4_s(f32x4.lt(a, below), f32x4.lt(b, below));
-    const beyond = i8x16.bitmask(i8x16.narrow_i16x8_s(up, down));
-    store<u8>(positive, <u8>(beyond & keep));
-    store<u8>(negative, <u8>((beyond >> 8) & keep));
+    const marks = i8x16.bitmask(i8x16.narrow_i16x8_s(up, down)) & keep;
+    store<u8>(positive, <u8>marks);
+    store<u8>(negative, <u8>(marks >> 8));
+    if (marks) {
+      v128.store(eightZ, a);
+      v128.store(eightZ, b, 16);
+      append(beyond, counts, beyondBytes, marks);
+    }
     const sa = v128.xor(v128.and(a, clear), flip);
     const sb = v128.xor(v128.and(b, clear), flip);
     v128.store(best, f32x4.pmax(v128.load(best), f32x4.pmax(sa, sb)));
@@ -99,7 +128,8 @@ export function addGroupMaps(
       count(histogram, low, h);
       count(histogram + 4 * h, high, h);
     }
-    z += 32;
+    beyond += beyondBytes;
+    counts += 8;
     positive += <usize>bitStride;
     negative += <usize>bitStride;
     best += 16;
