@@ -5,15 +5,15 @@ import {
   computePairs,
   conclude,
   drawPermutations,
-  mergeBlocks,
+  mergeShares,
   phaseBytes,
   screenEpochs,
   writePhases,
   type ByteSource,
-  type PairBlock,
   type Plan,
   type RecordingSource,
 } from './engine';
+import { buffersOf } from './run/buffers';
 import type { EngineWorkerApi, KnownRecording } from './protocol';
 
 /**
@@ -55,8 +55,8 @@ export function engineApi<Recording extends KnownRecording>(
       return Comlink.transfer(bytes, [bytes.buffer]);
     },
 
-    async conclude(plan, axes, counts, blocks) {
-      const maps = mergeBlocks(blocks, axes, plan.test);
+    async conclude(plan, axes, counts, gathered) {
+      const maps = mergeShares(gathered, axes, plan.test);
       const outcome = await conclude(plan, axes, counts, maps);
       // Comlink moves what is listed for the answer itself; a part's own list would be ignored.
       return Comlink.transfer({ maps, outcome }, buffersOf(maps));
@@ -73,12 +73,4 @@ function axesFor(plan: Plan, recordings: KnownRecording[]) {
     plan,
     recordings.map((recording) => recording.facts),
   );
-}
-
-/** The memory of a block's arrays, to be moved instead of copied. */
-export function buffersOf(block: PairBlock): ArrayBuffer[] {
-  const buffers = Object.values(block).flatMap((value) =>
-    ArrayBuffer.isView(value) && value.buffer instanceof ArrayBuffer ? [value.buffer] : [],
-  );
-  return [...new Set(buffers)];
 }

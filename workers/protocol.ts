@@ -1,4 +1,5 @@
 import type { Axes, Epoch, LostEpoch, Outcome, PairBlock, RecordingFacts } from './engine/types';
+import type { GatheredBlocks } from './engine/pair-block';
 import type { Plan } from './engine/plan';
 
 /**
@@ -64,12 +65,12 @@ export interface EngineWorkerApi<Recording extends KnownRecording = RecordingInp
   ): Promise<PairBlock>;
   /** Phase angles of the kept points as bytes [site][epoch][frequency][time], 256 to the turn. */
   phaseBytes(plan: Plan, axes: Axes, phases: SharedPhases): Promise<Uint8Array>;
-  /** Merges the blocks and draws the conclusions. */
+  /** Merges what the blocks left for single corrections, and draws the conclusions. */
   conclude(
     plan: Plan,
     axes: Axes,
     counts: { epochsA: number; epochsB: number },
-    blocks: PairBlock[],
+    gathered: GatheredBlocks,
   ): Promise<{ maps: PairBlock; outcome: Outcome }>;
   /**
    * Seconds that one pair under all permutations, and one epoch's phases, cost one worker here for

@@ -30,7 +30,8 @@ export { corrections, correctionOf, correctionIds, type CorrectionId } from './c
 export type { ClaimMaps, Correction } from './correct/correction';
 export { drawPermutations, drawsByteLength } from './null/draws';
 export { computePairs, type DrawData, type PhaseData } from './pairs';
-export { mergeBlocks, partLists } from './pair-block';
+export { BlockGatherer, mergeBlocks, mergeShares, partLists } from './pair-block';
+export type { GatheredBlocks } from './pair-block';
 export { histogramBins } from './histogram';
 export { ties } from './ties';
 export { planParts } from './correct/plan-parts';

@@ -1,6 +1,7 @@
 import { transfer } from 'comlink';
 import {
   axesOf,
+  BlockGatherer,
   engineVersion,
   partLists,
   planEpochs,
@@ -8,14 +9,14 @@ import {
   withoutLost,
   type Axes,
   type Epoch,
+  type GatheredBlocks,
   type LostEpoch,
   type Outcome,
-  type PairBlock,
   type Plan,
   type RunMaps,
 } from '../engine';
-import { buffersOf } from '../engine-api';
 import type { KnownRecording, SharedPhases } from '../protocol';
+import { buffersOf } from './buffers';
 import type { TaskPool } from './pool';
 import { draws, pairBlocks, phases, screen, type StepContext } from './steps';
 
@@ -90,12 +91,12 @@ export async function wholeRun<Recording extends KnownRecording>(
   const shared = await timed('phasesS', () =>
     phases(context, kept, (count) => onProgress('phases', (epochsDone += count), kept.length)),
   );
-  const blocks = await timed('pairsS', () => allPairs(context, shared, options));
+  const gathered = await timed('pairsS', () => allPairs(context, shared, options));
   onProgress('concluding', 0, 0);
   const counts = { epochsA: shared.epochsA, epochsB: shared.epochsB };
   const { maps, outcome } = await timed('concludeS', () =>
     pool.run((api) =>
-      api.conclude(plan, axes, counts, transfer(blocks, blocks.flatMap(buffersOf))),
+      api.conclude(plan, axes, counts, transfer(gathered, buffersOf(gathered.maps))),
     ),
   );
   return {
@@ -140,11 +141,11 @@ async function allPairs<Recording extends KnownRecording>(
   context: StepContext<Recording>,
   shared: SharedPhases,
   { pairsPerBlock, onProgress }: WholeRunOptions,
-): Promise<PairBlock[]> {
+): Promise<GatheredBlocks> {
   const pairCount = context.axes.pairs.length;
   onProgress?.('pairs', 0, pairCount);
   const drawn = await draws(context, shared);
-  const blocks: PairBlock[] = [];
+  const gatherer = new BlockGatherer(context.axes, context.plan.test);
   const doneOf = new Map<number, number>();
   let total = 0;
   // Words of a worker can arrive after its answer, and a broken worker's part begins anew.
@@ -162,13 +163,13 @@ async function allPairs<Recording extends KnownRecording>(
     {
       pair: (range, done) => count(range.from, done),
       block: (block) => {
-        blocks.push(block);
+        gatherer.add(block);
         count(block.firstPair, block.pairCount);
       },
     },
     pairsPerBlock,
   );
-  return blocks;
+  return gatherer.finish();
 }
 
 function stopwatch(timings: Timings) {
