@@ -111,6 +111,15 @@ function nullKernels(wasm: KernelExports) {
         rows,
         Number(start),
       ),
+    standardiseGroup: (values, scale, z, rows) =>
+      wasm.standardiseGroup(
+        values.byteOffset,
+        scale.center.byteOffset,
+        scale.inverse.byteOffset,
+        scale.rest.byteOffset,
+        z.byteOffset,
+        rows,
+      ),
     addGroupMaps: (values, scale, out, histogram, { rows, features, shape }) =>
       wasm.addGroupMaps(
         values.byteOffset,

@@ -66,6 +66,14 @@ export interface KernelExports extends WebAssembly.Exports {
     rows: number,
     start: number,
   ): void;
+  standardiseGroup(
+    values: number,
+    center: number,
+    inverse: number,
+    rest: number,
+    z: number,
+    rows: number,
+  ): void;
   addGroupMaps(
     values: number,
     center: number,

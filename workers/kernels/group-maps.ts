@@ -17,6 +17,21 @@ export function standardised(value: number, scale: MapScale, x: number): number 
   return fround(fround(away * scale.inverse[x]) - scale.rest[x]);
 }
 
+/**
+ * The z of eight features' surrogates, for whoever needs whole maps. Layout: `values` and `z`
+ * `[row * 8 + feature]`. Overwrites `z`; allocates nothing.
+ */
+export function standardiseGroup(
+  values: Float32Array,
+  scale: MapScale,
+  z: Float32Array,
+  rows: number,
+): void {
+  for (let at = 0; at < rows * groupFeatures; at++) {
+    z[at] = standardised(values[at], scale, at % groupFeatures);
+  }
+}
+
 /** Null maps of one pair, row after row, that groups of features write their part of. */
 export interface NullMapRows {
   /**

@@ -1,6 +1,6 @@
 import type { addClusterMasses } from './cluster-masses';
 import type { crossLanes, siteLanes, sumLanes } from './cross-lanes';
-import type { addGroupMaps } from './group-maps';
+import type { addGroupMaps, standardiseGroup } from './group-maps';
 import type { addGroupMoments } from './group-moments';
 import type { sumLabelledLanes } from './label-lanes';
 import type { resultantDifferences, resultantsOfLanes } from './resultant-lanes';
@@ -45,6 +45,7 @@ export interface Kernels {
   standardisedDifferences: typeof standardisedDifferences;
   addGroupMoments: typeof addGroupMoments;
   addGroupMaps: typeof addGroupMaps;
+  standardiseGroup: typeof standardiseGroup;
   addClusterMasses: typeof addClusterMasses;
 }
 

@@ -1,6 +1,6 @@
 import { addClusterMasses } from './cluster-masses';
 import { crossLanes, siteLanes, sumLanes } from './cross-lanes';
-import { addGroupMaps } from './group-maps';
+import { addGroupMaps, standardiseGroup } from './group-maps';
 import { addGroupMoments } from './group-moments';
 import { arrayBytes, layArrays, type Kernels } from './kernels';
 import { sumLabelledLanes } from './label-lanes';
@@ -23,6 +23,7 @@ export function plainKernels(): Kernels {
     standardisedDifferences,
     addGroupMoments,
     addGroupMaps,
+    standardiseGroup,
     addClusterMasses,
   };
 }

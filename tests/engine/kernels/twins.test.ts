@@ -245,6 +245,7 @@ function nullMaps(
     inverse: ['f32', 8],
     rest: ['f32', 8],
     beyond: ['f32', rowCount * stride],
+    z: ['f32', rowCount * stride],
     counts: ['u32', rowCount * 2],
     positive: ['u8', rowCount * shape.bitStride],
     negative: ['u8', rowCount * shape.bitStride],
@@ -268,6 +269,7 @@ function nullMaps(
     };
     const histogram = a.histogram.subarray(first * shape.binCount);
     const features = Math.min(8, featureCount - first);
+    kernels.standardiseGroup(a.values, a, a.z.subarray(first * rowCount), rowCount);
     kernels.addGroupMaps(a.values, a, out, histogram, { rows: rowCount, features, shape });
   }
   kernels.addClusterMasses(a, a.masses, a.scratch, {
@@ -278,6 +280,7 @@ function nullMaps(
   });
   return {
     beyond: [...a.beyond],
+    z: [...a.z],
     counts: [...a.counts],
     positive: [...a.positive],
     negative: [...a.negative],

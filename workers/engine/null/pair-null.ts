@@ -24,8 +24,8 @@ export interface NullSettings extends Pick<
   /** Map values held at once; nothing that is computed depends on it. */
   tileValues?: number;
   /**
-   * Visits a pair's null maps, a range of permutations at a time and in order, laid out as
-   * `NullMapRows` says of z. The pair's observed statistic, moments and counts are final by then.
+   * Visits a pair's null maps, a range of permutations at a time and in order:
+   * `z[(group * rows + row) * 8 + feature of the group]`. The pair's observed statistic, moments and counts are final by then.
    */
   onMaps?: (range: PermutationRange, z: Float32Array) => void;
 }
@@ -215,6 +215,10 @@ export class PairNull {
     };
     const histogram = arrays.histogram.subarray(feature * shape.binCount);
     const part = { rows, features, shape };
+    if (this.settings.onMaps) {
+      const z = arrays.z.subarray(feature * rows);
+      this.kernels.standardiseGroup(arrays.first, this.groups[group].map, z, rows);
+    }
     this.kernels.addGroupMaps(arrays.first, this.groups[group].map, out, histogram, part);
   }
 
@@ -241,7 +245,7 @@ function nullArrays(
   run: RunInput,
   rows: number,
   shape: NullMapShape,
-  { frequencyCount, timeCount }: NullSettings,
+  { frequencyCount, timeCount, onMaps }: NullSettings,
   isDifference: boolean,
 ) {
   const stride = paddedFeatures(run.featureCount);
@@ -250,6 +254,7 @@ function nullArrays(
     first: ['f32', rows * groupFeatures],
     second: ['f32', isDifference ? 0 : rows * groupFeatures],
     beyond: ['f32', rows * stride],
+    z: ['f32', onMaps ? rows * stride : 0],
     marks: ['u32', rows * 2],
     positive: ['u8', rows * shape.bitStride],
     negative: ['u8', rows * shape.bitStride],

@@ -5,6 +5,27 @@ function standardise(x: v128, center: v128, inverse: v128, rest: v128): v128 {
   return f32x4.sub(f32x4.mul(f32x4.sub(x, center), inverse), rest);
 }
 
+/** Twin: ../group-maps.ts. */
+export function standardiseGroup(
+  values: usize,
+  center: usize,
+  inverse: usize,
+  rest: usize,
+  z: usize,
+  rows: i32,
+): void {
+  for (let half: usize = 0; half < 32; half += 16) {
+    const c = v128.load(center + half);
+    const i = v128.load(inverse + half);
+    const r = v128.load(rest + half);
+    const end = values + ((<usize>rows) << 5) + half;
+    let to = z + half;
+    for (let from = values + half; from < end; from += 32, to += 32) {
+      v128.store(to, standardise(v128.load(from), c, i, r));
+    }
+  }
+}
+
 /** Bins as whole numbers in the low half of each lane. */
 function binsOf(z: v128, perUnit: v128, offset: v128, last: v128): v128 {
   const bin = f32x4.add(f32x4.floor(f32x4.mul(z, perUnit)), offset);

@@ -2,7 +2,7 @@
 // its source stand at its plain twin in workers/kernels/<name>.ts.
 export { addClusterMasses } from './cluster-masses';
 export { crossLanes, siteLanes, sumLanes } from './cross-lanes';
-export { addGroupMaps } from './group-maps';
+export { addGroupMaps, standardiseGroup } from './group-maps';
 export { addGroupMoments } from './group-moments';
 export { sumLabelledLanes } from './label-lanes';
 export { resultantDifferences, resultantsOfLanes } from './resultant-lanes';
