@@ -1,5 +1,6 @@
 import type { Axes, Epoch, LostEpoch, Outcome, PairBlock, RecordingFacts } from './engine/types';
 import type { GatheredBlocks } from './engine/pair-block';
+import type { RunCounts } from './engine/digest';
 import type { Plan } from './engine/plan';
 
 /**
@@ -26,6 +27,8 @@ export interface SharedPhases {
   buffer: SharedArrayBuffer;
   epochsA: number;
   epochsB: number;
+  /** Block of each kept epoch, where the plan's null keeps to blocks. */
+  blocks?: number[] | undefined;
 }
 
 /** What each permutation shuffles, drawn once a run and shared; the null model states the layout. */
@@ -50,7 +53,7 @@ export interface EngineWorkerApi<Recording extends KnownRecording = RecordingInp
   /** Draws permutations `from..to)`. */
   draws(
     plan: Plan,
-    counts: { epochsA: number; epochsB: number; axes: Axes },
+    counts: RunCounts & { axes: Axes },
     range: { from: number; to: number },
     shared: SharedDraws,
   ): Promise<void>;
@@ -78,6 +81,6 @@ export interface EngineWorkerApi<Recording extends KnownRecording = RecordingInp
    */
   calibrate(
     plan: Plan,
-    counts: { epochsA: number; epochsB: number; axes: Axes },
+    counts: RunCounts & { axes: Axes },
   ): Promise<{ secondsPerPair: number; secondsPerEpoch: number }>;
 }

@@ -12,6 +12,8 @@ import { engineVersion } from './version';
 export interface RunCounts {
   epochsA: number;
   epochsB: number;
+  /** Block of each kept epoch, where the plan's null keeps to blocks: see null/epoch-blocks.ts. */
+  blocks?: number[] | undefined;
 }
 
 /** SHA-256 of a text's UTF-8, 64 hexadecimal digits. */

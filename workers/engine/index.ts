@@ -28,6 +28,8 @@ export { nullModels, nullModelOf, nullIds, type NullId } from './null/registry';
 export type { NullModel } from './null/model';
 export { corrections, correctionOf, correctionIds, type CorrectionId } from './correct/registry';
 export type { ClaimMaps, Correction } from './correct/correction';
+export { epochBlocks } from './null/epoch-blocks';
+export { initialSettings, type SettingField, type Settings } from './settings';
 export { drawPermutations, drawsByteLength } from './null/draws';
 export { computePairs, type DrawData, type PhaseData } from './pairs';
 export { BlockGatherer, mergeBlocks, mergeShares, partLists } from './pair-block';

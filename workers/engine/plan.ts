@@ -1,6 +1,7 @@
 import { z } from 'zod';
-import { measureIds } from './measure/registry';
-import { nullIds } from './null/registry';
+import { measureIds, measureOf } from './measure/registry';
+import { nullIds, nullModelOf } from './null/registry';
+import { schemaOf, settingsSchema, type SettingField, type Settings } from './settings';
 import { correctionIds } from './correct/registry';
 
 /** Limits that keep a run inside a laptop's memory; each error names them. */
@@ -71,7 +72,7 @@ export const frequenciesSchema = z.discriminatedUnion('kind', [
   }),
 ]);
 
-export const planSchema = z.strictObject({
+const planShape = z.strictObject({
   format: z.literal('nullwright-plan/1'),
   /** The question in words. */
   question: z.string().trim().min(1, 'say in words what is asked').max(2000),
@@ -127,7 +128,11 @@ export const planSchema = z.strictObject({
       message: 'must not be before the first time',
     }),
   measure: z.enum(measureIds),
+  /** What the measure asks for besides, by its own registry entry. */
+  measureSettings: settingsSchema.optional(),
   null: z.enum(nullIds),
+  /** What the null asks for besides, by its own registry entry. */
+  nullSettings: settingsSchema.optional(),
   test: z.strictObject({
     tail: z.enum(['two-sided', 'a-greater', 'b-greater']),
     alpha: finite.gt(0).max(0.5),
@@ -143,6 +148,37 @@ export const planSchema = z.strictObject({
     clusterFormingZ: finite.positive().max(20),
     seed: z.string().trim().min(1, 'give a seed, any text').max(80),
   }),
+});
+
+/** Entries of the registries, as far as their settings go. */
+interface Entry {
+  name: string;
+  settings?: readonly SettingField[];
+}
+
+function checkSettings(
+  entry: Entry,
+  given: Settings | undefined,
+  field: string,
+  context: z.RefinementCtx,
+): void {
+  const parsed = schemaOf(entry.settings ?? []).safeParse(given ?? {});
+  for (const issue of parsed.error?.issues ?? []) {
+    context.addIssue({
+      code: 'custom',
+      path: [field, ...issue.path],
+      message:
+        issue.code === 'unrecognized_keys'
+          ? `must not be given for ${entry.name}: ${issue.keys.join(', ')}`
+          : issue.message,
+    });
+  }
+}
+
+/** A plan, with what its measure and null ask for. */
+export const planSchema = planShape.superRefine((plan, context) => {
+  checkSettings(measureOf(plan.measure), plan.measureSettings, 'measureSettings', context);
+  checkSettings(nullModelOf(plan.null), plan.nullSettings, 'nullSettings', context);
 });
 
 /** A contrast's definition, whole: what is locked, hashed and run. */

@@ -1,5 +1,5 @@
 import { proxy } from 'comlink';
-import { drawsByteLength, layoutOf } from '../engine';
+import { drawsByteLength, epochBlocks, layoutOf } from '../engine';
 import type { Axes, Epoch, LostEpoch, PairBlock, Plan } from '../engine';
 import type { KnownRecording, RecordingInput, SharedDraws, SharedPhases } from '../protocol';
 import type { TaskPool } from './pool';
@@ -48,6 +48,7 @@ export async function phases<Recording extends KnownRecording>(
     buffer: new SharedArrayBuffer(byteLength),
     epochsA,
     epochsB: kept.length - epochsA,
+    blocks: epochBlocks(plan, kept),
   };
   const size = partSize(kept.length, pool.size, 4, 100);
   await Promise.all(
@@ -65,9 +66,9 @@ export async function phases<Recording extends KnownRecording>(
 /** What each permutation shuffles. */
 export async function draws<Recording extends KnownRecording>(
   { pool, plan, axes, onWorker }: StepContext<Recording>,
-  { epochsA, epochsB }: SharedPhases,
+  { epochsA, epochsB, blocks }: SharedPhases,
 ): Promise<SharedDraws> {
-  const counts = { epochsA, epochsB, axes };
+  const counts = { epochsA, epochsB, blocks, axes };
   const shared = { buffer: new SharedArrayBuffer(drawsByteLength(plan, axes, counts)) };
   const { permutations } = plan.test;
   const size = partSize(permutations, pool.size, 2, 5000);

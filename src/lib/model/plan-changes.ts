@@ -1,4 +1,13 @@
-import { correctionOf, measureOf, nullModelOf, phaseMethods, type Plan, type Rule } from '$engine';
+import {
+  correctionOf,
+  measureOf,
+  nullModelOf,
+  phaseMethods,
+  type Plan,
+  type Rule,
+  type SettingField,
+  type Settings,
+} from '$engine';
 import { fieldName } from './plan-fields';
 
 /** One choice that differs between two versions of a plan, before and after in words. */
@@ -57,6 +66,23 @@ const tailWords: Record<Plan['test']['tail'], string> = {
   'b-greater': 'more in B',
 };
 
+/** "a block is a run of epochs; epochs or minutes in a block 20"; empty where nothing is asked. */
+function settingWords(
+  entry: { settings?: readonly SettingField[] },
+  given: Settings | undefined,
+): string {
+  return (entry.settings ?? [])
+    .map((setting) => {
+      const value = given?.[setting.key] ?? setting.initial;
+      if (setting.kind === 'number') {
+        return `${setting.name} ${number(Number(value))}${setting.unit ? ` ${setting.unit}` : ''}`;
+      }
+      const chosen = setting.options.find((option) => option.value === value);
+      return `${setting.name} ${chosen?.name ?? value}`;
+    })
+    .join('; ');
+}
+
 function methodName(id: Plan['phase']['method']): string {
   return phaseMethods.find((method) => method.id === id)?.name ?? id;
 }
@@ -96,7 +122,13 @@ function choices(plan: Plan): [string, string, unknown][] {
     ['times.toS', seconds(times.toS), times.toS],
     ['times.stepS', seconds(times.stepS), times.stepS],
     ['measure', measureOf(plan.measure).name, plan.measure],
+    [
+      'measureSettings',
+      settingWords(measureOf(plan.measure), plan.measureSettings),
+      plan.measureSettings,
+    ],
     ['null', nullModelOf(plan.null).name, plan.null],
+    ['nullSettings', settingWords(nullModelOf(plan.null), plan.nullSettings), plan.nullSettings],
     ['test.tail', tailWords[test.tail], test.tail],
     ['test.alpha', number(test.alpha), test.alpha],
     ['test.permutations', test.permutations.toLocaleString('en'), test.permutations],
@@ -118,5 +150,7 @@ export function planChanges(before: Plan, now: Plan): PlanChange[] {
 
 /** A plan as people read it: each choice by its name, in the order of the form. */
 export function planInWords(plan: Plan): { field: string; name: string; words: string }[] {
-  return choices(plan).map(([field, words]) => ({ field, name: fieldName(field), words }));
+  return choices(plan)
+    .filter(([, words]) => words !== '')
+    .map(([field, words]) => ({ field, name: fieldName(field), words }));
 }

@@ -1,5 +1,5 @@
 import { z } from 'zod';
-import { correctionIds, measureIds, nullIds, type Plan, type Rule } from '$engine';
+import { correctionIds, measureIds, nullIds, type Plan, type Rule, type Settings } from '$engine';
 
 import { numberText } from './number-text';
 
@@ -60,6 +60,8 @@ export const planDraftSchema = z.strictObject({
   cycles: z.strictObject({ from: typed, to: typed }),
   times: z.strictObject({ fromS: typed, toS: typed, stepS: typed }),
   measure: z.enum(measureIds),
+  /** What measures, nulls and phase methods ask for besides, as `id.key`; absent: as they begin. */
+  settings: z.record(z.string().max(100), typed).default({}),
   null: z.enum(nullIds),
   test: z.strictObject({
     tail: z.enum(['two-sided', 'a-greater', 'b-greater']),
@@ -111,6 +113,7 @@ export function newDraft(question: string, seed: string): PlanDraft {
     cycles: { from: '4', to: '8' },
     times: { fromS: '0', toS: '0.6', stepS: '0.05' },
     measure: 'ispc',
+    settings: {},
     null: 'labels',
     test: {
       tail: 'two-sided',
@@ -132,6 +135,20 @@ function ruleToDraft(rule: Rule): RuleDraft {
     toS: numberText(rule.toS),
     everyS: numberText(rule.everyS),
   };
+}
+
+function settingsToDraft(id: string, settings: Settings = {}): PlanDraft['settings'] {
+  return Object.fromEntries(
+    Object.entries(settings).map(([key, value]) => [
+      settingKey(id, key),
+      typeof value === 'number' ? numberText(value) : value,
+    ]),
+  );
+}
+
+/** Where the draft keeps what an entry of a registry asks for. */
+export function settingKey(id: string, key: string): string {
+  return `${id}.${key}`;
 }
 
 function pairsToDraft(pairs: Plan['pairs'], empty: PlanDraft['pairs']): PlanDraft['pairs'] {
@@ -200,6 +217,10 @@ export function planToDraft(plan: Plan): PlanDraft {
       stepS: numberText(plan.times.stepS),
     },
     measure: plan.measure,
+    settings: {
+      ...settingsToDraft(plan.measure, plan.measureSettings),
+      ...settingsToDraft(plan.null, plan.nullSettings),
+    },
     null: plan.null,
     test: {
       tail: plan.test.tail,

@@ -1,5 +1,14 @@
 import fc from 'fast-check';
-import { correctionIds, measureIds, nullIds, type Plan } from '$engine';
+import {
+  correctionIds,
+  initialSettings,
+  measureIds,
+  measureOf,
+  nullIds,
+  nullModelOf,
+  type Plan,
+  type SettingField,
+} from '$engine';
 
 const number = (min: number, max: number) =>
   fc.double({ min, max, noNaN: true }).map((value) => (value === 0 ? 0 : value));
@@ -90,6 +99,17 @@ function withRecordings(plan: Omit<Plan, 'recordings'>): Plan {
   return { ...plan, recordings };
 }
 
+/** With what its measure and null ask for, as they begin. */
+function withSettings(plan: Plan): Plan {
+  const measure: { settings?: readonly SettingField[] } = measureOf(plan.measure);
+  const model: { settings?: readonly SettingField[] } = nullModelOf(plan.null);
+  return {
+    ...plan,
+    ...(measure.settings ? { measureSettings: initialSettings(measure.settings) } : {}),
+    ...(model.settings ? { nullSettings: initialSettings(model.settings) } : {}),
+  };
+}
+
 /** Any plan that the schema takes. */
 export const arbitraryPlan: fc.Arbitrary<Plan> = fc
   .uniqueArray(sha256, { minLength: 1, maxLength: 3 })
@@ -116,4 +136,5 @@ export const arbitraryPlan: fc.Arbitrary<Plan> = fc
       test,
     }),
   )
-  .map(withRecordings);
+  .map(withRecordings)
+  .map(withSettings);

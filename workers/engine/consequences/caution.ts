@@ -17,6 +17,7 @@ export type CautionCode =
   | 'unequal-epochs'
   | 'different-recordings'
   | 'conditions-in-blocks'
+  | 'blocks-of-one-label'
   | 'epochs-overlap'
   | 'wide-kernels'
   | 'short-window-for-shifts'

@@ -10,6 +10,7 @@ export type { Caution, CautionCode } from './caution';
 const rules: CautionRule[] = [
   epochs.tooFewEpochs,
   signal.tooMuchMemory,
+  epochs.blocksOfOneLabel,
   test.windowTooLong,
   network.componentsOfFewPairs,
   network.componentsMemory,

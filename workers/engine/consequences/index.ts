@@ -3,6 +3,7 @@ import type { Epoch, LostEpoch, RecordingFacts } from '../types';
 import { measureOf, type MeasureId } from '../measure/registry';
 import type { ChanceLevels } from '../numbers/chance';
 import { drawShape } from '../null/draws';
+import { epochBlocks } from '../null/epoch-blocks';
 import { nullModelOf } from '../null/registry';
 import { phaseLayout } from '../phase/layout';
 import type { KernelWidth } from '../phase/method';
@@ -74,7 +75,11 @@ export function consequencesOf(
     axes.samplingRateHz,
   );
   const model = nullModelOf(plan.null);
-  const shape = drawShape(plan, axes, { epochsA: counts.a, epochsB: counts.b });
+  const shape = drawShape(plan, axes, {
+    epochsA: counts.a,
+    epochsB: counts.b,
+    blocks: epochBlocks(plan, epochs),
+  });
   const arrangements = model.logArrangements(shape);
   const tests = axes.pairs.length * axes.frequenciesHz.length * axes.timesS.length;
   const facts = {

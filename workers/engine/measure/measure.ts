@@ -1,3 +1,4 @@
+import type { SettingField } from '../settings';
 import type { ChanceLevels } from '../numbers/chance';
 
 /** Which stretches of phasors are summed, epoch by epoch. */
@@ -42,6 +43,8 @@ export interface Measure<Id extends string = string> {
   caution: string | null;
   /** Whether phasors keep their amplitude (z in uV) or are of length 1 (u). */
   needsAmplitude: boolean;
+  /** What the plan must say besides its id; absent where nothing. */
+  settings?: readonly SettingField[];
   /** What it does where there is no synchrony; null where no formula holds. */
   chance: ChanceLevels | null;
   /** Smallest and largest possible value. */

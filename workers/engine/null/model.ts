@@ -1,5 +1,7 @@
 import type { Arrays, ArrayPlan, Kernels } from '../../kernels/kernels';
 import type { Measure } from '../measure/measure';
+import type { SettingField, Settings } from '../settings';
+import type { Epoch } from '../types';
 import type { PhaseLayout } from '../phase/layout';
 
 /** Sizes that a null's draws depend on. */
@@ -10,6 +12,8 @@ export interface DrawShape {
   epochsB: number;
   /** Samples of an epoch's window, both ends included. */
   windowSamples: number;
+  /** Block of each kept epoch, for nulls that keep to blocks. */
+  blocks?: number[] | undefined;
 }
 
 /** Permutations `from .. to - 1`. */
@@ -93,6 +97,10 @@ export interface NullModel<Id extends string = string> {
   /** One sentence: what holds if the null is true. */
   underNull: string;
   source: string;
+  /** What the plan must say besides its id; absent where nothing. */
+  settings?: readonly SettingField[];
+  /** The block of each kept epoch, from 0 up, for nulls that keep to blocks. */
+  blocksOf?(epochs: Pick<Epoch, 'recording' | 'onsetS'>[], settings: Settings): number[];
   /** Whether phases are needed at every sample of the window, not at the plan's times only. */
   needsWholeWindow: boolean;
   /**
