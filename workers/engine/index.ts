@@ -46,3 +46,10 @@ export { ascending, countAtLeast } from './correct/distribution';
 export { canonicalJson } from './canonical';
 export { planHash, runDigest, sha256Hex, type RunCounts } from './digest';
 export { phaseRose, rosePetals, type Rose } from './phase/rose';
+export {
+  groupLevel,
+  type GroupEdge,
+  type GroupInput,
+  type GroupOutcome,
+} from './group/group-level';
+export type { GroupDesign, ParticipantMap } from './group/design';
