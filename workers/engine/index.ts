@@ -12,9 +12,14 @@ export {
   type Consequences,
   type EpochCounts,
 } from './consequences';
-export type { KernelWidth, PhaseMethod } from './phase/method';
-export { morletKernel } from './phase/morlet';
-export { phaseMethods } from './phase/registry';
+export type { KernelWidth, PhaseField, PhaseMethod } from './phase/method';
+export {
+  phaseMethod,
+  phaseMethodIds,
+  phaseMethods,
+  type PhaseMethodId,
+  type PhaseSettings,
+} from './phase/registry';
 export { layoutOf } from './phase/phases';
 export type { PhaseLayout } from './phase/layout';
 export { writePhases } from './phase/write-phases';

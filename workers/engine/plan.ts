@@ -3,18 +3,19 @@ import { measureIds, measureOf } from './measure/registry';
 import { nullIds, nullModelOf } from './null/registry';
 import { schemaOf, settingsSchema, type SettingField, type Settings } from './settings';
 import { correctionIds } from './correct/registry';
+import { mostFrequencies } from './phase/frequencies';
+import { phaseSchema } from './phase/registry';
 
 /** Limits that keep a run inside a laptop's memory; each error names them. */
 export const planLimits = {
   sites: 512,
-  frequencies: 200,
+  frequencies: mostFrequencies,
   times: 2000,
   permutations: 100_000,
   features: 6_000_000,
 } as const;
 
 const finite = z.number();
-const hz = finite.positive('must be above 0 Hz');
 const label = z.string().trim().min(1).max(80);
 /** As it stands in the recording, blanks and all. */
 const eventLabel = z.string().min(1).max(1000);
@@ -56,20 +57,6 @@ export const pairsSchema = z.discriminatedUnion('kind', [
     second: z.array(label).min(1),
   }),
   z.strictObject({ kind: z.literal('from'), site: label }),
-]);
-
-export const frequenciesSchema = z.discriminatedUnion('kind', [
-  z.strictObject({
-    kind: z.literal('grid'),
-    fromHz: hz,
-    toHz: hz,
-    steps: z.int().min(1).max(planLimits.frequencies),
-    spacing: z.enum(['log', 'linear']),
-  }),
-  z.strictObject({
-    kind: z.literal('list'),
-    hz: z.array(hz).min(1).max(planLimits.frequencies),
-  }),
 ]);
 
 const planShape = z.strictObject({
@@ -115,12 +102,7 @@ const planShape = z.strictObject({
     .max(planLimits.sites)
     .refine((sites) => new Set(sites).size === sites.length, { message: 'names a site twice' }),
   pairs: pairsSchema,
-  phase: z.strictObject({
-    method: z.literal('morlet'),
-    frequencies: frequenciesSchema,
-    /** Log-spaced over the frequencies from the first to the second; equal numbers: fixed. */
-    cycles: z.strictObject({ from: finite.min(1).max(50), to: finite.min(1).max(50) }),
-  }),
+  phase: phaseSchema,
   times: z
     .strictObject({ fromS: finite, toS: finite, stepS: finite.positive('must be above 0 s') })
     .refine((times) => times.toS >= times.fromS, {
@@ -185,5 +167,4 @@ export const planSchema = planShape.superRefine((plan, context) => {
 export type Plan = z.infer<typeof planSchema>;
 export type Rule = z.infer<typeof ruleSchema>;
 export type PairRule = z.infer<typeof pairsSchema>;
-export type FrequencyRule = z.infer<typeof frequenciesSchema>;
 export type Tail = Plan['test']['tail'];

@@ -2,12 +2,13 @@ import {
   correctionOf,
   measureOf,
   nullModelOf,
-  phaseMethods,
+  phaseMethod,
   type Plan,
   type Rule,
   type SettingField,
   type Settings,
 } from '$engine';
+import { settingOf } from './phase-draft';
 import { fieldName } from './plan-fields';
 
 /** One choice that differs between two versions of a plan, before and after in words. */
@@ -83,8 +84,15 @@ function settingWords(
     .join('; ');
 }
 
-function methodName(id: Plan['phase']['method']): string {
-  return phaseMethods.find((method) => method.id === id)?.name ?? id;
+function phaseChoices(phase: Plan['phase']): [string, string, unknown][] {
+  return phaseMethod(phase.method).fields.map((field) => {
+    const value = settingOf(phase, field.path);
+    const words =
+      field.kind === 'choice'
+        ? (field.options.find((option) => option.value === value)?.label ?? String(value))
+        : `${number(value as number)}${field.unit ? ` ${field.unit}` : ''}`;
+    return [`phase.${field.path}`, words, value];
+  });
 }
 
 function correctionWords([claim, ...others]: Plan['test']['corrections']): string {
@@ -115,9 +123,9 @@ function choices(plan: Plan): [string, string, unknown][] {
     ['epoch.reject.byHand', `${epoch.reject.byHand.length} marked`, epoch.reject.byHand],
     ['sites', `${plan.sites.length}: ${list(plan.sites, 600)}`, plan.sites],
     ['pairs', pairWords(plan.pairs), plan.pairs],
-    ['phase.method', methodName(phase.method), phase.method],
+    ['phase.method', phaseMethod(phase.method).name, phase.method],
     ['phase.frequencies', frequencyWords(phase.frequencies), phase.frequencies],
-    ['phase.cycles', `${number(phase.cycles.from)} to ${number(phase.cycles.to)}`, phase.cycles],
+    ...phaseChoices(phase),
     ['times.fromS', seconds(times.fromS), times.fromS],
     ['times.toS', seconds(times.toS), times.toS],
     ['times.stepS', seconds(times.stepS), times.stepS],
@@ -138,15 +146,23 @@ function choices(plan: Plan): [string, string, unknown][] {
   ];
 }
 
-/** Which choices of `now` differ from those of `before`, in the order of the form. */
+/**
+ * Which choices of `now` differ from those of `before`, in the order of the form; settings of a phase
+ * method that only one of the two has are said with it.
+ */
 export function planChanges(before: Plan, now: Plan): PlanChange[] {
   const old = choices(before);
-  return choices(now).flatMap(([field, after, value], i) => {
-    const [, beforeWords, beforeValue] = old[i];
+  const next = choices(now);
+  const both = [...next, ...old.filter(([field]) => !next.some(([other]) => other === field))];
+  return both.flatMap(([field]) => {
+    const [, beforeWords, beforeValue] = old.find(([other]) => other === field) ?? absent;
+    const [, after, value] = next.find(([other]) => other === field) ?? absent;
     if (JSON.stringify(value) === JSON.stringify(beforeValue)) return [];
     return [{ field, name: fieldName(field), before: beforeWords, after }];
   });
 }
+
+const absent = ['', 'none', undefined] as const;
 
 /** A plan as people read it: each choice by its name, in the order of the form. */
 export function planInWords(plan: Plan): { field: string; name: string; words: string }[] {

@@ -1,7 +1,7 @@
 import { z } from 'zod';
 import { correctionIds, measureIds, nullIds, type Plan, type Rule, type Settings } from '$engine';
-
 import { numberText } from './number-text';
+import { newPhaseDraft, phaseDraftSchema, phaseToDraft, withPhase } from './phase-draft';
 
 // What a person has typed so far. Numbers stay text, so that "abc" or an empty field survives a
 // reload and is reported beside its field; values of a choice that is not taken now are kept too.
@@ -23,7 +23,7 @@ const conditionDraftSchema = z.strictObject({
   rules: z.array(ruleDraftSchema).max(50),
 });
 
-export const planDraftSchema = z.strictObject({
+const wholeDraftSchema = z.strictObject({
   format: z.literal('nullwright-draft/1'),
   question: z.string().max(4000),
   participant: typed,
@@ -57,7 +57,7 @@ export const planDraftSchema = z.strictObject({
     spacing: z.enum(['log', 'linear']),
     list: z.string().max(4000),
   }),
-  cycles: z.strictObject({ from: typed, to: typed }),
+  phase: phaseDraftSchema,
   times: z.strictObject({ fromS: typed, toS: typed, stepS: typed }),
   measure: z.enum(measureIds),
   /** What measures, nulls and phase methods ask for besides, as `id.key`; absent: as they begin. */
@@ -73,6 +73,8 @@ export const planDraftSchema = z.strictObject({
     seed: typed,
   }),
 });
+
+export const planDraftSchema = z.preprocess(withPhase, wholeDraftSchema);
 
 export type PlanDraft = z.infer<typeof planDraftSchema>;
 export type ConditionDraft = PlanDraft['a'];
@@ -110,7 +112,7 @@ export function newDraft(question: string, seed: string): PlanDraft {
       spacing: 'log',
       list: '',
     },
-    cycles: { from: '4', to: '8' },
+    phase: newPhaseDraft(),
     times: { fromS: '0', toS: '0.6', stepS: '0.05' },
     measure: 'ispc',
     settings: {},
@@ -207,10 +209,7 @@ export function planToDraft(plan: Plan): PlanDraft {
     sites: [...plan.sites],
     pairs: pairsToDraft(plan.pairs, empty.pairs),
     frequencies: frequenciesToDraft(plan.phase.frequencies, empty.frequencies),
-    cycles: {
-      from: numberText(plan.phase.cycles.from),
-      to: numberText(plan.phase.cycles.to),
-    },
+    phase: phaseToDraft(plan.phase),
     times: {
       fromS: numberText(plan.times.fromS),
       toS: numberText(plan.times.toS),

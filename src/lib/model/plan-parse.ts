@@ -8,6 +8,7 @@ import {
 } from '$engine';
 import { readCount, readNumber } from './number-text';
 import { settingKey, type ConditionDraft, type PlanDraft, type RuleDraft } from './plan-draft';
+import { phaseSettings } from './phase-draft';
 import { issuesOf, planIssue, type PlanIssue } from './plan-issues';
 
 export type ParsedDraft =
@@ -151,12 +152,8 @@ export function draftToPlan(draft: PlanDraft, names: ReadonlyMap<string, string>
     sites: draft.sites,
     pairs: pairs(draft.pairs),
     phase: {
-      method: 'morlet',
+      ...phaseSettings(draft.phase, (field, text) => read.read(field, text)),
       frequencies: frequencies(read, draft.frequencies),
-      cycles: {
-        from: read.read('phase.cycles.from', draft.cycles.from),
-        to: read.read('phase.cycles.to', draft.cycles.to),
-      },
     },
     times: {
       fromS: read.read('times.fromS', draft.times.fromS),

@@ -123,11 +123,26 @@ export const arbitraryPlan: fc.Arbitrary<Plan> = fc
       epoch,
       sites: sites(2),
       pairs,
-      phase: fc.record({
-        method: fc.constant('morlet' as const),
-        frequencies,
-        cycles: fc.record({ from: number(1, 50), to: number(1, 50) }),
-      }),
+      phase: fc.oneof(
+        fc.record({
+          method: fc.constant('morlet' as const),
+          frequencies,
+          cycles: fc.record({ from: number(1, 50), to: number(1, 50) }),
+        }),
+        fc.record({
+          method: fc.constant('stft' as const),
+          frequencies,
+          taperS: number(0.1, 10),
+        }),
+        fc.record({
+          method: fc.constant('filter-hilbert' as const),
+          frequencies,
+          halfWidth: fc.oneof(
+            fc.record({ value: number(0.01, 0.9), unit: fc.constant('share' as const) }),
+            fc.record({ value: number(0.1, 10), unit: fc.constant('Hz' as const) }),
+          ),
+        }),
+      ),
       times: fc
         .record({ span, stepS: number(0.001, 10) })
         .map(({ span: [fromS, toS], stepS }) => ({ fromS, toS, stepS })),

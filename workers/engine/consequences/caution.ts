@@ -20,6 +20,7 @@ export type CautionCode =
   | 'blocks-of-one-label'
   | 'epochs-overlap'
   | 'wide-kernels'
+  | 'phase-method'
   | 'short-window-for-shifts'
   | 'shared-sources'
   | 'reference-of-few'

@@ -28,6 +28,7 @@ const rules: CautionRule[] = [
   signal.referenceOfFew,
   test.shortWindowForShifts,
   signal.wideKernels,
+  signal.phaseMethodCaution,
   signal.lineFrequency,
   signal.sharedSources,
   test.measureCaution,

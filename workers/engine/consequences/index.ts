@@ -46,6 +46,8 @@ export interface Consequences {
   critical: { a: number | null; b: number | null };
   /** Difference of the measure that stands at z = `statedZ` where there is no synchrony in either. */
   smallestDifference: { z: number; difference: number | null };
+  /** The settings that the kernels are of, to draw them. */
+  phase: Plan['phase'];
   kernels: KernelWidth[];
   guardS: number;
   /** Memory for the phases of all epochs, shared by the workers, bytes. */
@@ -99,6 +101,7 @@ export function consequencesOf(
     smallestUncorrectedP: smallestP(plan.test, arrangements),
     arrangements: arrangements > Math.log(1e15) ? null : Math.round(Math.exp(arrangements)),
     ...chanceFacts(plan, counts),
+    phase: plan.phase,
     kernels,
     guardS: Math.max(...kernels.map((kernel) => kernel.halfLength)) / axes.samplingRateHz,
     phaseBytes: phaseLayout(axes, epochs.length, window, keepsWholeWindow(plan)).byteLength,

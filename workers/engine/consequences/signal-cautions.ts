@@ -1,3 +1,4 @@
+import { phaseMethod } from '../phase/registry';
 import { listed } from '../prepare/recordings';
 import { said, widestKernel, type CautionRule } from './caution';
 
@@ -68,7 +69,7 @@ export const wideKernels: CautionRule = ({ plan, facts }) => {
     return {
       code: 'wide-kernels',
       severity: 'attention',
-      message: `${kernel}, wider than the window of ${said(toS - fromS)} s: its phases come mostly from outside. Take fewer cycles, a higher frequency or a longer window.`,
+      message: `${kernel}, wider than the window of ${said(toS - fromS)} s: its phases come mostly from outside. Take ${phaseMethod(plan.phase.method).sharper}, a higher frequency or a longer window.`,
     };
   }
   const several = plan.times.toS - plan.times.fromS >= plan.times.stepS;
@@ -78,6 +79,11 @@ export const wideKernels: CautionRule = ({ plan, facts }) => {
     severity: 'note',
     message: `${kernel}: times closer than that are not separate findings.`,
   };
+};
+
+export const phaseMethodCaution: CautionRule = ({ plan, axes }) => {
+  const message = phaseMethod(plan.phase.method).caution(plan.phase, axes.frequenciesHz);
+  return message === null ? null : { code: 'phase-method', severity: 'attention', message };
 };
 
 export const lineFrequency: CautionRule = ({ facts }) => {

@@ -46,14 +46,17 @@ export function phaseJob(plan: Plan, axes: Axes, epochCount: number): PhaseJob {
     ? Int32Array.from({ length: window.count }, (_, i) => i)
     : window.kept;
   const method = phaseMethod(plan.phase.method);
-  const kernels = method.kernels(plan.phase, frequenciesHz, rate);
   const values = 2 * layout.samplesPerEpoch;
   const length = window.count + 2 * guard;
   return {
     layout,
     sites: axes.sites,
     frequenciesHz,
-    analyser: method.analyser(kernels, { guard, windowCount: window.count, offsets }),
+    analyser: method.analyser(plan.phase, frequenciesHz, rate, {
+      guard,
+      windowCount: window.count,
+      offsets,
+    }),
     keepsAmplitude: measureOf(plan.measure).needsAmplitude,
     first: new Float64Array(length),
     second: new Float64Array(length),

@@ -1,4 +1,5 @@
 import type { Plan } from '../plan';
+import { phaseMethod } from '../phase/registry';
 import type { Axes, RecordingFacts } from '../types';
 import { refuseEmptyReference, refuseForeignUnits } from './checks';
 import { frequenciesOf, windowSamples } from './grid';
@@ -16,6 +17,7 @@ export function axesOf(plan: Plan, recordings: RecordingFacts[]): Axes {
   refuseForeignUnits(plan, recordings);
   const pairs = pairsOf(plan.pairs, plan.sites);
   const frequenciesHz = frequenciesOf(plan, samplingRateHz);
+  phaseMethod(plan.phase.method).refuse(plan.phase, frequenciesHz, samplingRateHz);
   const { first, kept } = windowSamples(plan, samplingRateHz);
   assertFeatures(pairs.length, frequenciesHz.length, kept.length);
   const timesS = Array.from(kept, (sample) => (first + sample) / samplingRateHz);

@@ -14,8 +14,6 @@ export const hints = {
   sites: 'Sites marked bad in a recording are left out unless you choose them.',
   pairs: 'Fewer pairs are fewer tests, so smaller differences can survive the correction.',
   spacing: 'Log spacing puts the same number of steps into each doubling of frequency.',
-  cycles:
-    'Cycles of the wavelet at the lowest and the highest frequency. More cycles tell frequencies apart better and moments in time worse.',
   times:
     'Moments at which synchrony is measured, in seconds from the event. Closer than the kernel is wide, they are not separate findings.',
   tail: 'Two-sided finds differences either way; a one-sided test must be chosen before the data are seen.',
