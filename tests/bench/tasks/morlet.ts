@@ -1,6 +1,6 @@
 import FFT from 'fft.js';
 import { phaseJob, phasesOfEpoch } from '../../../workers/engine/phase/phases';
-import { phaseMethod } from '../../../workers/engine/phase/registry';
+import { cyclesOf, morletKernel } from '../../../workers/engine/phase/morlet';
 import { guardSamples } from '../../../workers/engine/phase/guard';
 import { samplePlan } from '../../engine/sample-plan';
 import { agree, readF32, uniform, write, writeSettings, type Task } from '../task';
@@ -51,8 +51,9 @@ function load(folder: string) {
 function kernelSpectra(): Float32Array {
   const fft = new FFT(samples);
   const out = new Float32Array(frequencies.length * samples);
-  phaseMethod('morlet')
-    .kernels(phase, frequencies, rate)
+  const cycles = cyclesOf(phase.cycles, frequencies.length);
+  frequencies
+    .map((hz, f) => morletKernel(hz, cycles[f], rate))
     .forEach(({ halfLength, re, im }, f) => {
       const centred = new Float64Array(2 * samples);
       for (let m = -halfLength; m <= halfLength; m++) {
