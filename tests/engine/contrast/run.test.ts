@@ -2,10 +2,15 @@ import { readdir, readFile, rm, writeFile } from 'node:fs/promises';
 import { afterAll, beforeAll, describe, expect, test } from 'vitest';
 import {
   bytesOf,
+  correctionIds,
   factsOf,
+  initialSettings,
+  nullIds,
+  nullModelOf,
   openEdf,
   planHash,
   planSchema,
+  type NullModel,
   type Plan,
 } from '../../../workers/engine';
 import { parseNpy } from '../../../workers/engine/npy';
@@ -145,6 +150,26 @@ describe('the digest', () => {
     const result = await resultIn(desk.at(`w${workers}`));
     expect(result).toMatchObject({ workers, digest: expected.summary.digest });
   });
+
+  test.each(nullIds)(
+    'under the null %s and every correction is that of a run in one thread',
+    async (id) => {
+      const { settings } = nullModelOf(id) as NullModel;
+      const plan: Plan = {
+        ...desk.plan,
+        null: id,
+        ...(settings && { nullSettings: initialSettings(settings) }),
+        test: { ...desk.plan.test, corrections: [...correctionIds] },
+      };
+      const file = await desk.planFile(`${id}.json`, plan);
+      const { code, stderr } = await contrast(
+        ...['--plan', file, '--recording', desk.recording, '--out', desk.at(id), '--workers', '2'],
+      );
+      expect([code, stderr]).toEqual([0, '']);
+      const { digest } = (await inThisThread(plan)).summary;
+      expect((await resultIn(desk.at(id)))['digest']).toBe(digest);
+    },
+  );
 
   test("is another with another seed, which result.json states beside the plan's own", async () => {
     const { code } = await run(desk.at('ebb'), '--seed', 'ebb');
