@@ -10,11 +10,13 @@ const work = tasks[Number(index)].load(folder);
 // Compilers need some goes before a loop has its final speed.
 let result = work();
 result = work();
-const times: number[] = [];
+const times: [number, number][] = [];
 for (let i = 0; i < Number(repeats); i++) {
   const start = performance.now();
+  const cpu = process.cpuUsage();
   result = work();
-  times.push((performance.now() - start) / 1000);
+  const used = process.cpuUsage(cpu);
+  times.push([(performance.now() - start) / 1000, (used.user + used.system) / 1e6]);
 }
 write(folder, 'ours.f64', Float64Array.from(result));
 console.log(JSON.stringify({ times }));

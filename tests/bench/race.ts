@@ -13,15 +13,21 @@ export interface Times {
   /** Median seconds of one repeat, and half the distance between the quartiles. */
   median: number;
   spread: number;
+  /** Median processor seconds. */
+  cpu: number;
 }
+
+/** Seconds of one repeat by the clock, and of the processor. */
+type Sample = [wall: number, cpu: number];
 
 export interface Race {
   task: Task;
   cores: number;
   ours: Times;
   twin: Times;
-  /** How many times faster ours is. */
+  /** How many times faster ours is, by the clock and by the processor time used. */
   ratio: number;
+  cpuRatio: number;
 }
 
 /** Environment of both sides: one thread each; BLAS may choose its own kernels. */
@@ -37,7 +43,7 @@ function environment(): NodeJS.ProcessEnv {
   return env;
 }
 
-function timesOf(command: string, args: string[]): Promise<number[]> {
+function timesOf(command: string, args: string[]): Promise<Sample[]> {
   return new Promise((resolve, reject) => {
     const child = spawn(command, args, {
       env: environment(),
@@ -48,16 +54,18 @@ function timesOf(command: string, args: string[]): Promise<number[]> {
     child.once('error', reject);
     child.once('exit', (code) => {
       if (code !== 0) reject(new Error(`${command} ${args.join(' ')} ended with ${code}`));
-      else resolve((JSON.parse(text) as { times: number[] }).times);
+      else resolve((JSON.parse(text) as { times: Sample[] }).times);
     });
   });
 }
 
-function summary(times: number[]): Times {
-  const sorted = [...times].sort((a, b) => a - b);
-  const at = (share: number) =>
-    sorted[Math.min(sorted.length - 1, Math.floor(share * sorted.length))];
-  return { median: at(0.5), spread: (at(0.75) - at(0.25)) / 2 };
+function summary(samples: Sample[]): Times {
+  const quantile = (share: number, which: 0 | 1) => {
+    const sorted = samples.map((sample) => sample[which]).sort((a, b) => a - b);
+    return sorted[Math.min(sorted.length - 1, Math.floor(share * sorted.length))];
+  };
+  const spread = (quantile(0.75, 0) - quantile(0.25, 0)) / 2;
+  return { median: quantile(0.5, 0), spread, cpu: quantile(0.5, 1) };
 }
 
 /** The same task by both sides, one after the other, with as many processes each as `cores`. */
@@ -74,7 +82,9 @@ export async function race(task: Task, index: number, cores: number): Promise<Ra
     const ofTwin = await run(python, twin);
     const ofOurs = await run(process.execPath, ['--import', 'tsx', ...ours]);
     task.compare(readF64(folder, 'ours.f64'), readF64(folder, 'twin.f64'));
-    return { task, cores, ours: ofOurs, twin: ofTwin, ratio: ofTwin.median / ofOurs.median };
+    const ratio = ofTwin.median / ofOurs.median;
+    const cpuRatio = ofTwin.cpu / ofOurs.cpu;
+    return { task, cores, ours: ofOurs, twin: ofTwin, ratio, cpuRatio };
   } finally {
     rmSync(folder, { recursive: true, force: true });
   }

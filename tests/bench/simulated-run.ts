@@ -7,7 +7,7 @@ import {
 } from '../../workers/engine';
 import { layoutOf } from '../../workers/engine/phase/phases';
 import { samplePlan } from '../engine/sample-plan';
-import { uniform } from './task';
+import { uniform } from './random';
 
 export interface RunSizes {
   sites: number;

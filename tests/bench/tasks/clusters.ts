@@ -1,6 +1,7 @@
 import { newKernels } from '../../../workers/kernels';
 import { clusterScratchLength } from '../../../workers/kernels/cluster-masses';
-import { agree, readF32, uniform, write, writeSettings, type Task } from '../task';
+import { uniform } from '../random';
+import { agree, readF32, write, writeSettings, type Task } from '../task';
 
 const sizes = { maps: 1000, frequencies: 30, times: 100 };
 const { maps, frequencies, times } = sizes;

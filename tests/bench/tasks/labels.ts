@@ -6,7 +6,8 @@ import {
   labelOffsets,
 } from '../../../workers/kernels/label-lanes';
 import { groupStates, statePlan } from '../../../workers/engine/null/group-state';
-import { agree, order, readF32, uniform, write, writeSettings, type Task } from '../task';
+import { order, uniform } from '../random';
+import { agree, readF32, write, writeSettings, type Task } from '../task';
 
 const sizes = { features: 2016, epochs: 200, epochsA: 100, permutations: 1000 };
 const { features, epochs, epochsA, permutations } = sizes;

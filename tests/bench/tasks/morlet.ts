@@ -3,7 +3,8 @@ import { phaseJob, phasesOfEpoch } from '../../../workers/engine/phase/phases';
 import { cyclesOf, morletKernel } from '../../../workers/engine/phase/morlet';
 import { guardSamples } from '../../../workers/engine/phase/guard';
 import { samplePlan } from '../../engine/sample-plan';
-import { agree, readF32, uniform, write, writeSettings, type Task } from '../task';
+import { uniform } from '../random';
+import { agree, readF32, write, writeSettings, type Task } from '../task';
 
 const rate = 512;
 const epochs = 64;
@@ -87,7 +88,10 @@ export const morletTask: Task = {
     write(folder, 'kernels.f32', kernelSpectra());
     const size = samples;
     const settings = { epochs, samples, size, frequencies: frequencies.length, times, step };
-    writeSettings(folder, { ...settings, first: guard });
+    const centreBins = frequencies.map((hz) => (hz * samples) / rate);
+    const cycles = frequencies.map((_, i) => 3 * (10 / 3) ** (i / (frequencies.length - 1)));
+    const sigmaBins = centreBins.map((bin, i) => bin / cycles[i]);
+    writeSettings(folder, { ...settings, first: guard, centreBins, sigmaBins });
   },
   load,
   compare(ours, twin) {

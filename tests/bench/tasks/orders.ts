@@ -1,6 +1,7 @@
 import { newKernels } from '../../../workers/kernels';
 import { groupStates, statePlan } from '../../../workers/engine/null/group-state';
-import { agree, order, readF32, readU16, uniform, write, writeSettings, type Task } from '../task';
+import { order, uniform } from '../random';
+import { agree, readF32, readU16, write, writeSettings, type Task } from '../task';
 
 const sizes = { features: 120, sites: 64, epochs: 200, permutations: 20 };
 const groups = sizes.features / 8;

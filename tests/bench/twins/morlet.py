@@ -11,22 +11,30 @@ x = read("epochs.f32", np.float32, (E, L))
 kernels = read("kernels.f32", np.float32, (NF, M))
 FIRST = S["first"]
 FOLDED = M // STEP
+# Bins from -M/2 to M/2 - 1, those within 5 sd of a kernel's spectrum: low kernels reach below zero.
+# It leaves out the ripple of the cut-off Gaussian, which ours keeps.
+signed = np.fft.fftshift(kernels, axes=1)
+turn = np.exp(2j * np.pi * np.arange(-M // 2, M // 2) * FIRST / M).astype(np.complex64)
 bands = []
 for f in range(NF):
-    band = np.flatnonzero(np.abs(kernels[f]) > 1e-6 * np.abs(kernels[f]).max())
-    bands.append((band[0], band[-1] + 1))
+    reach = 5 * S["sigmaBins"][f]
+    centre = M // 2 + S["centreBins"][f]
+    bands.append((int(np.ceil(centre - reach)), int(np.floor(centre + reach)) + 1))
+LOWEST = min(start for start, _ in bands)
 
 
 def work():
-    spectra = sf.rfft(x, M, axis=1)
-    turned = spectra * np.exp(2j * np.pi * np.arange(M // 2 + 1) * FIRST / M).astype(np.complex64)
+    half = sf.rfft(x, M, axis=1)
+    spectra = np.empty((E, M), np.complex64)
+    spectra[:, M // 2 :] = half[:, : M // 2]
+    if LOWEST < M // 2:
+        spectra[:, LOWEST : M // 2] = half[:, M // 2 - LOWEST : 0 : -1].conj()
     products = np.zeros((E, NF, FOLDED), np.complex64)
     for f, (k, end) in enumerate(bands):
-        end = min(end, M // 2 + 1)
         while k < end:
-            e = min(end, (k // FOLDED + 1) * FOLDED)
-            into = slice(k % FOLDED, k % FOLDED + e - k)
-            products[:, f, into] += turned[:, k:e] * kernels[f, k:e]
+            place = (k - M // 2) % FOLDED
+            e = min(end, k + FOLDED - place)
+            products[:, f, place : place + e - k] += spectra[:, k:e] * (signed[f, k:e] * turn[k:e])
             k = e
     y = sf.ifft(products, axis=2, overwrite_x=True)[:, :, :NT]
     y /= np.abs(y)
