@@ -81,6 +81,7 @@ const planShape = z.strictObject({
       reference: z.discriminatedUnion('kind', [
         z.strictObject({ kind: z.literal('recorded') }),
         z.strictObject({ kind: z.literal('average') }),
+        z.strictObject({ kind: z.literal('laplacian') }),
         z.strictObject({ kind: z.literal('channels'), sites: z.array(label).min(1) }),
       ]),
       reject: z.strictObject({

@@ -58,6 +58,7 @@ function frequencyWords(rule: Plan['phase']['frequencies']): string {
 function referenceWords(reference: Plan['epoch']['reference']): string {
   if (reference.kind === 'recorded') return 'as recorded';
   if (reference.kind === 'average') return 'mean of all analysed sites';
+  if (reference.kind === 'laplacian') return 'surface Laplacian of the analysed sites';
   return `mean of ${list(reference.sites)}`;
 }
 

@@ -33,7 +33,7 @@ const wholeDraftSchema = z.strictObject({
     fromS: typed,
     toS: typed,
     detrend: z.enum(['mean', 'line']),
-    reference: z.enum(['recorded', 'average', 'channels']),
+    reference: z.enum(['recorded', 'average', 'channels', 'laplacian']),
     referenceSites: names,
     aboveUv: typed,
     flatBelowUv: typed,

@@ -49,7 +49,7 @@ const epoch = fc.record({
   detrend: fc.constantFrom('mean' as const, 'line' as const),
   reference: fc.oneof(
     fc.constant({ kind: 'recorded' as const }),
-    fc.constant({ kind: 'average' as const }),
+    fc.constantFrom({ kind: 'average' as const }, { kind: 'laplacian' as const }),
     sites(1).map((list) => ({ kind: 'channels' as const, sites: list })),
   ),
   reject: fc.record({

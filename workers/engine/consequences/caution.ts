@@ -24,6 +24,7 @@ export type CautionCode =
   | 'short-window-for-shifts'
   | 'shared-sources'
   | 'reference-of-few'
+  | 'laplacian-of-few'
   | 'reference-analysed'
   | 'bad-site'
   | 'line-frequency'

@@ -26,6 +26,7 @@ const rules: CautionRule[] = [
   signal.badSites,
   signal.referenceAnalysed,
   signal.referenceOfFew,
+  signal.laplacianOfFew,
   test.shortWindowForShifts,
   signal.wideKernels,
   signal.phaseMethodCaution,

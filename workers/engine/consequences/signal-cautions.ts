@@ -6,6 +6,8 @@ import { said, widestKernel, type CautionRule } from './caution';
 const mostSharedBytes = 2 ** 31;
 /** Sites from which their mean comes near a neutral reference. Common practice, no source. */
 const wantedForAverage = 20;
+/** Sites from which a surface Laplacian resolves neighbours. Common practice, no source. */
+const wantedForLaplacian = 32;
 const mainsHz = [50, 60];
 
 export const tooMuchMemory: CautionRule = ({ facts }) => {
@@ -58,6 +60,16 @@ export const referenceOfFew: CautionRule = ({ plan }) => {
     code: 'reference-of-few',
     severity: 'attention',
     message: `The mean of ${said(count)} sites is no neutral reference: it carries part of every site into all the others.`,
+  };
+};
+
+export const laplacianOfFew: CautionRule = ({ plan }) => {
+  const count = plan.sites.length;
+  if (plan.epoch.reference.kind !== 'laplacian' || count >= wantedForLaplacian) return null;
+  return {
+    code: 'laplacian-of-few',
+    severity: 'attention',
+    message: `A surface Laplacian of ${said(count)} sites is coarse: it cannot tell neighbours apart, sites at the rim are guessed from one side, and all sites share their interpolation. From ${wantedForLaplacian} well-spread sites on it is dense enough.`,
   };
 };
 

@@ -6,7 +6,7 @@ export const hints = {
   detrend:
     'What is taken out of each epoch before its phases: its mean, or its straight line, which also removes slow drift.',
   reference:
-    'Phases depend on the reference. A shared reference makes sites look alike; the mean of all analysed sites is fairest with many well-spread sites.',
+    'Phases depend on the reference. A shared reference makes sites look alike; the mean of all analysed sites is fairest with many well-spread sites; the surface Laplacian needs no reference and damps what spreads far, but needs positions and dense sites.',
   aboveUv:
     'An epoch is left out when any analysed site swings more than this within the window, from lowest to highest sample. Empty: no limit.',
   flatBelowUv:
