@@ -41,6 +41,8 @@ const config = {
           '../*.config.ts',
           '../eslint.config.js',
         ],
+        // AssemblyScript: its own compiler checks it.
+        exclude: [...tsconfig.exclude, '../workers/kernels/wasm/**'],
       }),
     },
   },

@@ -1,5 +1,9 @@
 import { sveltekit } from '@sveltejs/kit/vite';
 import { defineConfig } from 'vitest/config';
+import { ensureKernels } from './scripts/lib/kernels.mjs';
+
+// The engine imports the compiled kernels.
+ensureKernels();
 
 // One project a kind of test; browser tests run under playwright.config.ts.
 const project = (name: string, extra: object = {}) => ({

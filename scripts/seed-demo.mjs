@@ -3,6 +3,7 @@
  * server modules, so Vite loads it with the application's aliases and environment.
  */
 import { createServer } from 'vite';
+import { ensureHeadless } from './lib/headless.mjs';
 import { root } from './lib/root.mjs';
 
 const vite = await createServer({
@@ -14,7 +15,8 @@ const vite = await createServer({
 });
 try {
   const { seedDemo } = await vite.ssrLoadModule('/scripts/demo/seed.ts');
-  await seedDemo((line) => console.log(line));
+  const { thread } = await ensureHeadless();
+  await seedDemo((line) => console.log(line), thread);
 } finally {
   await vite.close();
 }

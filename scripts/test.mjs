@@ -9,6 +9,7 @@ import { ensureDatabase } from './lib/database.mjs';
 import { ensureDebian, needs } from './lib/debian.mjs';
 import { applicationEnv } from './lib/environment.mjs';
 import { ensurePackages } from './lib/packages.mjs';
+import { ensureKernels } from './lib/kernels.mjs';
 import { freePort } from './lib/ports.mjs';
 import { startPostgres } from './lib/postgres.mjs';
 import { root } from './lib/root.mjs';
@@ -138,6 +139,7 @@ async function main() {
     );
   }
   ensurePackages();
+  ensureKernels();
   rmSync(reports, { recursive: true, force: true });
   mkdirSync(reports, { recursive: true });
   if (!process.env.RECORDINGS_DIR) {

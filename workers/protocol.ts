@@ -1,16 +1,25 @@
 import type { Axes, Epoch, LostEpoch, Outcome, PairBlock, RecordingFacts } from './engine/types';
+import type { GatheredBlocks } from './engine/pair-block';
+import type { RunCounts } from './engine/digest';
 import type { Plan } from './engine/plan';
 
 /**
- * What the page and an engine worker say to each other, over Comlink. The worker keeps no
+ * What a run and its engine workers say to each other, over Comlink. The worker keeps no
  * state between calls, so that any worker can do any part, in any order, again.
  */
 
-/** A recording's facts with its bytes (Blobs are handed over without copying). */
-export interface RecordingInput {
+/** What every worker must know of a recording; how its bytes are reached is the worker's own. */
+export interface KnownRecording {
   facts: RecordingFacts;
+}
+
+/** A browser's worker reads Blobs, which are handed over without copying. */
+export interface RecordingInput extends KnownRecording {
   blob: Blob;
 }
+
+/** A thread under Node reads Blobs, or opens the file itself. */
+export type ThreadRecording = RecordingInput | (KnownRecording & { path: string });
 
 /** Unit phasors of all kept epochs, shared by all workers; the engine states the layout. */
 export interface SharedPhases {
@@ -18,6 +27,8 @@ export interface SharedPhases {
   buffer: SharedArrayBuffer;
   epochsA: number;
   epochsB: number;
+  /** Block of each kept epoch, where the plan's null keeps to blocks. */
+  blocks?: number[] | undefined;
 }
 
 /** What each permutation shuffles, drawn once a run and shared; the null model states the layout. */
@@ -25,16 +36,16 @@ export interface SharedDraws {
   buffer: SharedArrayBuffer;
 }
 
-export interface EngineWorkerApi {
+export interface EngineWorkerApi<Recording extends KnownRecording = RecordingInput> {
   /** Reads the samples of these epochs and says which break a limit of the plan. */
-  screen(plan: Plan, recordings: RecordingInput[], epochs: Epoch[]): Promise<LostEpoch[]>;
+  screen(plan: Plan, recordings: Recording[], epochs: Epoch[]): Promise<LostEpoch[]>;
   /**
    * Writes the phases of `epochs[from..to)` into the shared buffer. `epochs` are the kept ones,
    * all of A before all of B.
    */
   phases(
     plan: Plan,
-    recordings: RecordingInput[],
+    recordings: Recording[],
     epochs: Epoch[],
     range: { from: number; to: number },
     shared: SharedPhases,
@@ -42,7 +53,7 @@ export interface EngineWorkerApi {
   /** Draws permutations `from..to)`. */
   draws(
     plan: Plan,
-    counts: { epochsA: number; epochsB: number; axes: Axes },
+    counts: RunCounts & { axes: Axes },
     range: { from: number; to: number },
     shared: SharedDraws,
   ): Promise<void>;
@@ -57,12 +68,12 @@ export interface EngineWorkerApi {
   ): Promise<PairBlock>;
   /** Phase angles of the kept points as bytes [site][epoch][frequency][time], 256 to the turn. */
   phaseBytes(plan: Plan, axes: Axes, phases: SharedPhases): Promise<Uint8Array>;
-  /** Merges the blocks and draws the conclusions. */
+  /** Merges what the blocks left for single corrections, and draws the conclusions. */
   conclude(
     plan: Plan,
     axes: Axes,
     counts: { epochsA: number; epochsB: number },
-    blocks: PairBlock[],
+    gathered: GatheredBlocks,
   ): Promise<{ maps: PairBlock; outcome: Outcome }>;
   /**
    * Seconds that one pair under all permutations, and one epoch's phases, cost one worker here for
@@ -70,6 +81,6 @@ export interface EngineWorkerApi {
    */
   calibrate(
     plan: Plan,
-    counts: { epochsA: number; epochsB: number; axes: Axes },
+    counts: RunCounts & { axes: Axes },
   ): Promise<{ secondsPerPair: number; secondsPerEpoch: number }>;
 }

@@ -1,7 +1,7 @@
 import { mkdtemp, rm, writeFile } from 'node:fs/promises';
-import { tmpdir } from 'node:os';
+import { availableParallelism, tmpdir } from 'node:os';
 import path from 'node:path';
-import { bytesOf, engineVersion, planHash, writeEdf, type Plan } from '$engine';
+import { engineVersion, planHash, writeEdf, type Plan } from '$engine';
 import { planToDraft } from '$lib/model/plan-draft';
 import type { Member } from '$lib/server/access';
 import { createPerson } from '$lib/server/accounts/people';
@@ -12,7 +12,10 @@ import { ingestRecording, recordingFacts } from '$lib/server/recordings';
 import { createRun, storeResult } from '$lib/server/runs';
 import { storage } from '$lib/server/storage';
 import { createStudy } from '$lib/server/studies';
-import { runHeadless } from '$workers/headless';
+import { withPhaseBytes } from '$workers/headless';
+import { poolSize } from '$workers/run/pool';
+import { threadPool } from '$workers/run/thread-pool';
+import { wholeRun } from '$workers/run/whole-run';
 import { demoAccounts, demoPassword, demoTeam } from './accounts.mjs';
 import { finishedPlan, readyPlan } from './plans';
 import { rateHz, simulate, sites, type Participant } from './simulate';
@@ -33,9 +36,9 @@ interface Kept {
 /**
  * Makes the invented laboratory: its people, a study of simulated recordings, a contrast that has
  * been run and one that waits. Each step asks first what stands, so that a start that was killed
- * half-way is finished by the next.
+ * half-way is finished by the next. `thread` is the bundled workers/engine-thread.ts.
  */
-export async function seedDemo(say: (line: string) => void): Promise<void> {
+export async function seedDemo(say: (line: string) => void, thread: URL): Promise<void> {
   try {
     if (await demoStands()) return;
     say('seeding the demo (simulated recordings, one finished run)');
@@ -50,7 +53,7 @@ export async function seedDemo(say: (line: string) => void): Promise<void> {
     await seedContrast(researcher, { studyId, name: 'Every pair, P01', plan: readyPlan(first) });
     const plan = finishedPlan(second);
     const contrastId = await seedContrast(researcher, { studyId, name: finishedName, plan });
-    await seedRun(researcher, { studyId, contrastId, plan, recording: second });
+    await seedRun(researcher, { studyId, contrastId, plan, recording: second }, thread);
   } finally {
     await db.destroy();
   }
@@ -214,14 +217,22 @@ async function made(
 async function seedRun(
   member: Member,
   run: { studyId: string; contrastId: string; plan: Plan; recording: Kept },
+  thread: URL,
 ): Promise<void> {
+  const { plan } = run;
   const { sha256, bytes } = run.recording;
   const [facts] = await recordingFacts(db, member.teamId, {
     studyId: run.studyId,
     sha256s: [sha256],
   });
-  const asked = { planHash: await planHash(run.plan), engineVersion, workerCount: 1 };
-  const { id } = await createRun(db, member, run.contrastId, asked);
-  const result = await runHeadless(run.plan, [{ facts, source: bytesOf(bytes) }]);
-  await storeResult(db, storage, member, id, result, result.summary);
+  const pool = threadPool(poolSize(null, availableParallelism()), thread);
+  try {
+    const asked = { planHash: await planHash(plan), engineVersion, workerCount: pool.size };
+    const { id } = await createRun(db, member, run.contrastId, asked);
+    const recordings = [{ facts: facts!, blob: new Blob([new Uint8Array(bytes)]) }];
+    const result = await withPhaseBytes(pool, plan, await wholeRun(pool, plan, recordings));
+    await storeResult(db, storage, member, id, result, result.summary);
+  } finally {
+    pool.end();
+  }
 }

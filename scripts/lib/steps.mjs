@@ -1,7 +1,9 @@
 import { spawn, spawnSync } from 'node:child_process';
 import { createHash } from 'node:crypto';
-import { existsSync, readdirSync, readFileSync, statSync, writeFileSync } from 'node:fs';
+import { existsSync, readFileSync, writeFileSync } from 'node:fs';
 import path from 'node:path';
+import { filesBelow } from './files.mjs';
+import { ensureKernels } from './kernels.mjs';
 import { root } from './root.mjs';
 
 /** Runs a program of the project's packages to its end; throws when it fails. */
@@ -33,19 +35,13 @@ const sources = [
   'src',
   'static',
   'workers',
-  'scripts/kernels',
+  'scripts/lib/kernels.mjs',
   'package-lock.json',
   'svelte.config.js',
   'vite.config.ts',
   'tailwind.config.js',
   'tsconfig.json',
 ];
-
-function* filesBelow(place) {
-  if (!existsSync(place)) return;
-  if (statSync(place).isFile()) yield place;
-  else for (const name of readdirSync(place).sort()) yield* filesBelow(path.join(place, name));
-}
 
 function sourceHash() {
   const hash = createHash('sha256');
@@ -59,6 +55,7 @@ function sourceHash() {
 
 /** Builds the application unless the last build came from the same sources. */
 export function ensureBuild() {
+  ensureKernels();
   const stamp = path.join(root, 'build', '.source-hash');
   const wanted = sourceHash();
   if (existsSync(stamp) && readFileSync(stamp, 'utf8') === wanted) return;

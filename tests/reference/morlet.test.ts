@@ -3,7 +3,7 @@ import seedrandom from 'seedrandom';
 import { describe, expect, test } from 'vitest';
 import { guardSamples } from '../../workers/engine/phase/guard';
 import { morlet } from '../../workers/engine/phase/morlet';
-import type { PhaseSettings } from '../../workers/engine/phase/method';
+import type { PhaseSettings } from '../../workers/engine/phase/registry';
 
 // Outside values: SciPy (Debian's python3-scipy) at test time; the wavelet is written in NumPy from
 // its formula, the convolution is scipy.signal.fftconvolve, the widths are measured by
@@ -52,11 +52,11 @@ interface FromSciPy {
 
 const rate = 250;
 const hz = [4, 7.5, 13, 31, 60];
-const settings: PhaseSettings = {
-  method: 'morlet',
-  frequencies: { kind: 'list', hz },
+const settings = {
+  method: 'morlet' as const,
+  frequencies: { kind: 'list' as const, hz },
   cycles: { from: 3, to: 9 },
-};
+} satisfies PhaseSettings;
 const windowCount = 301;
 const offsets = Int32Array.from([0, 13, 50, 51, 200, 300]);
 const guard = guardSamples(settings, hz, rate);
@@ -88,11 +88,10 @@ describe('Morlet against SciPy', () => {
   ) as FromSciPy;
 
   test('the convolution is equal at every kept sample', () => {
-    const kernels = morlet.kernels(settings, hz, rate);
     const re = new Float64Array(2 * hz.length * offsets.length);
     const im = new Float64Array(re.length);
     morlet
-      .analyser(kernels, { guard, windowCount, offsets })
+      .analyser(settings, hz, rate, { guard, windowCount, offsets })
       .transform(signals[0], signals[1], re, im);
     const largest = Math.max(...outside.re.map(Math.abs));
     // Both are f64 transforms of about 1000 values; 1e-12 of the largest leaves three decades.

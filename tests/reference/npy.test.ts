@@ -1,6 +1,6 @@
 import { execFileSync } from 'node:child_process';
 import { describe, expect, test } from 'vitest';
-import { npyHeader, npyParts, parseNpy, parseNpyHeader, type NpyArray } from '$lib/model/npy';
+import { npyHeader, npyParts, parseNpy, parseNpyHeader, type NpyArray } from '$workers/engine/npy';
 
 // Outside values: NumPy's own reader and writer (Debian's python3-numpy) at test time. COMP.
 

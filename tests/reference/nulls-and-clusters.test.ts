@@ -2,7 +2,7 @@ import { execFileSync } from 'node:child_process';
 import seedrandom from 'seedrandom';
 import { describe, expect, test } from 'vitest';
 import { clopperPearson } from '../../workers/engine';
-import { adjustFalseDiscovery } from '../../workers/engine/correct/benjamini-hochberg';
+import { adjustFalseDiscovery } from '../../workers/engine/correct/false-discovery';
 import { observedClusters } from '../../workers/engine/correct/observed-clusters';
 import { sumCrossTerms } from '../../workers/kernels/cross-sums';
 import { resultantLengths } from '../../workers/kernels/resultants';

@@ -63,7 +63,7 @@ export function fistsPlan(set: ExpectedSet, sha256: string): Plan {
     a: { name: 'right', rules: [{ kind: 'events', recording: sha256, labels: ['T2'] }] },
     b: { name: 'left', rules: [{ kind: 'events', recording: sha256, labels: ['T1'] }] },
     epoch: { ...common(set).epoch, fromS: -0.5, toS: 3.5 },
-    phase: { ...common(set).phase, cycles: { from: 5, to: 7 } },
+    phase: { ...common(set).phase, method: 'morlet', cycles: { from: 5, to: 7 } },
     times: { fromS: 0, toS: 3, stepS: 1 },
   };
 }

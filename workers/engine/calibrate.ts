@@ -32,7 +32,10 @@ function secondsPerPair(plan: Plan, axes: Axes, counts: RunCounts): number {
   const sample = {
     epochsA: Math.max(2, Math.min(mostEpochs, counts.epochsA)),
     epochsB: Math.max(2, Math.min(mostEpochs, counts.epochsB)),
+    blocks: [] as number[],
   };
+  // One block is as dear as many.
+  sample.blocks = new Array<number>(sample.epochsA + sample.epochsB).fill(0);
   const share = (counts.epochsA + counts.epochsB) / (sample.epochsA + sample.epochsB);
   const pair: Axes = { ...axes, sites: axes.sites.slice(0, 2), pairs: [[0, 1]] };
   const { byteLength } = layoutOf(plan, pair, sample.epochsA + sample.epochsB);

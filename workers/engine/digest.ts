@@ -1,16 +1,19 @@
 import { canonicalJson } from './canonical';
 import { ascending, countAtLeast } from './correct/distribution';
 import type { ClaimMaps } from './correct/correction';
+import { planParts } from './correct/plan-parts';
 import { tailStatistic } from './correct/tail';
 import type { Plan } from './plan';
 import { ties } from './ties';
-import type { Cluster } from './types';
+import type { Cluster, CorrectionOutcome } from './types';
 import { engineVersion } from './version';
 
 /** Kept epochs of each condition. */
 export interface RunCounts {
   epochsA: number;
   epochsB: number;
+  /** Block of each kept epoch, where the plan's null keeps to blocks: see null/epoch-blocks.ts. */
+  blocks?: number[] | undefined;
 }
 
 /** SHA-256 of a text's UTF-8, 64 hexadecimal digits. */
@@ -33,7 +36,7 @@ export function runDigest(
   plan: Plan,
   counts: RunCounts,
   maps: Pick<ClaimMaps, 'upper' | 'lower' | 'z' | 'maxStatistic'>,
-  clusters: Pick<Cluster, 'exceedances'>[],
+  claims: { clusters: Pick<Cluster, 'exceedances'>[]; corrections: CorrectionOutcome[] },
 ): Promise<string> {
   const sorted = ascending(maps.maxStatistic);
   const maxStatistic = Uint32Array.from(maps.z, (z) =>
@@ -50,8 +53,22 @@ export function runDigest(
         upper: maps.upper,
         lower: maps.lower,
         maxStatistic,
-        clusters: clusters.map((cluster) => cluster.exceedances),
+        clusters: claims.clusters.map((cluster) => cluster.exceedances),
+        ...partCounts(plan, claims.corrections),
       },
     }),
+  );
+}
+
+/** Exceedances of the corrections that rest on a part of their own, from p = (1 + b) / (1 + m). */
+function partCounts(plan: Plan, outcomes: CorrectionOutcome[]): Record<string, Uint32Array> {
+  const ids = new Set<string>(planParts(plan.test).map(([id]) => id));
+  return Object.fromEntries(
+    outcomes
+      .filter(({ id }) => ids.has(id))
+      .map(({ id, adjustedP }) => [
+        id,
+        Uint32Array.from(adjustedP, (p) => Math.round(p * (plan.test.permutations + 1)) - 1),
+      ]),
   );
 }

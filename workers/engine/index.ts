@@ -12,9 +12,14 @@ export {
   type Consequences,
   type EpochCounts,
 } from './consequences';
-export type { KernelWidth, PhaseMethod } from './phase/method';
-export { morletKernel } from './phase/morlet';
-export { phaseMethods } from './phase/registry';
+export type { KernelWidth, PhaseField, PhaseMethod } from './phase/method';
+export {
+  phaseMethod,
+  phaseMethodIds,
+  phaseMethods,
+  type PhaseMethodId,
+  type PhaseSettings,
+} from './phase/registry';
 export { layoutOf } from './phase/phases';
 export type { PhaseLayout } from './phase/layout';
 export { writePhases } from './phase/write-phases';
@@ -29,11 +34,15 @@ export { nullCaution } from './null/caution';
 export type { NullModel } from './null/model';
 export { corrections, correctionOf, correctionIds, type CorrectionId } from './correct/registry';
 export type { ClaimMaps, Correction } from './correct/correction';
+export { epochBlocks } from './null/epoch-blocks';
+export { initialSettings, type SettingField, type Settings } from './settings';
 export { drawPermutations, drawsByteLength } from './null/draws';
 export { computePairs, type DrawData, type PhaseData } from './pairs';
-export { mergeBlocks } from './pair-block';
+export { BlockGatherer, mergeBlocks, mergeShares, partLists } from './pair-block';
+export type { GatheredBlocks } from './pair-block';
 export { histogramBins } from './histogram';
 export { ties } from './ties';
+export { planParts } from './correct/plan-parts';
 export { conclude, concludeFrom, type Claims } from './correct/conclude';
 export { checkMaps } from './correct/check-maps';
 export { clopperPearson } from './correct/clopper-pearson';
@@ -43,3 +52,10 @@ export { ascending, countAtLeast } from './correct/distribution';
 export { canonicalJson } from './canonical';
 export { planHash, runDigest, sha256Hex, type RunCounts } from './digest';
 export { phaseRose, rosePetals, type Rose } from './phase/rose';
+export {
+  groupLevel,
+  type GroupEdge,
+  type GroupInput,
+  type GroupOutcome,
+} from './group/group-level';
+export type { GroupDesign, ParticipantMap } from './group/design';

@@ -1,19 +1,21 @@
 import { z } from 'zod';
-import { measureIds } from './measure/registry';
-import { nullIds } from './null/registry';
+import { measureIds, measureOf } from './measure/registry';
+import { nullIds, nullModelOf } from './null/registry';
+import { schemaOf, settingsSchema, type SettingField, type Settings } from './settings';
 import { correctionIds } from './correct/registry';
+import { mostFrequencies } from './phase/frequencies';
+import { phaseSchema } from './phase/registry';
 
 /** Limits that keep a run inside a laptop's memory; each error names them. */
 export const planLimits = {
   sites: 512,
-  frequencies: 200,
+  frequencies: mostFrequencies,
   times: 2000,
   permutations: 100_000,
   features: 6_000_000,
 } as const;
 
 const finite = z.number();
-const hz = finite.positive('must be above 0 Hz');
 const label = z.string().trim().min(1).max(80);
 /** As it stands in the recording, blanks and all. */
 const eventLabel = z.string().min(1).max(1000);
@@ -57,21 +59,7 @@ export const pairsSchema = z.discriminatedUnion('kind', [
   z.strictObject({ kind: z.literal('from'), site: label }),
 ]);
 
-export const frequenciesSchema = z.discriminatedUnion('kind', [
-  z.strictObject({
-    kind: z.literal('grid'),
-    fromHz: hz,
-    toHz: hz,
-    steps: z.int().min(1).max(planLimits.frequencies),
-    spacing: z.enum(['log', 'linear']),
-  }),
-  z.strictObject({
-    kind: z.literal('list'),
-    hz: z.array(hz).min(1).max(planLimits.frequencies),
-  }),
-]);
-
-export const planSchema = z.strictObject({
+const planShape = z.strictObject({
   format: z.literal('nullwright-plan/1'),
   /** The question in words. */
   question: z.string().trim().min(1, 'say in words what is asked').max(2000),
@@ -93,6 +81,7 @@ export const planSchema = z.strictObject({
       reference: z.discriminatedUnion('kind', [
         z.strictObject({ kind: z.literal('recorded') }),
         z.strictObject({ kind: z.literal('average') }),
+        z.strictObject({ kind: z.literal('laplacian') }),
         z.strictObject({ kind: z.literal('channels'), sites: z.array(label).min(1) }),
       ]),
       reject: z.strictObject({
@@ -114,12 +103,7 @@ export const planSchema = z.strictObject({
     .max(planLimits.sites)
     .refine((sites) => new Set(sites).size === sites.length, { message: 'names a site twice' }),
   pairs: pairsSchema,
-  phase: z.strictObject({
-    method: z.literal('morlet'),
-    frequencies: frequenciesSchema,
-    /** Log-spaced over the frequencies from the first to the second; equal numbers: fixed. */
-    cycles: z.strictObject({ from: finite.min(1).max(50), to: finite.min(1).max(50) }),
-  }),
+  phase: phaseSchema,
   times: z
     .strictObject({ fromS: finite, toS: finite, stepS: finite.positive('must be above 0 s') })
     .refine((times) => times.toS >= times.fromS, {
@@ -127,7 +111,11 @@ export const planSchema = z.strictObject({
       message: 'must not be before the first time',
     }),
   measure: z.enum(measureIds),
+  /** What the measure asks for besides, by its own registry entry. */
+  measureSettings: settingsSchema.optional(),
   null: z.enum(nullIds),
+  /** What the null asks for besides, by its own registry entry. */
+  nullSettings: settingsSchema.optional(),
   test: z.strictObject({
     tail: z.enum(['two-sided', 'a-greater', 'b-greater']),
     alpha: finite.gt(0).max(0.5),
@@ -145,9 +133,39 @@ export const planSchema = z.strictObject({
   }),
 });
 
+/** Entries of the registries, as far as their settings go. */
+interface Entry {
+  name: string;
+  settings?: readonly SettingField[];
+}
+
+function checkSettings(
+  entry: Entry,
+  given: Settings | undefined,
+  field: string,
+  context: z.RefinementCtx,
+): void {
+  const parsed = schemaOf(entry.settings ?? []).safeParse(given ?? {});
+  for (const issue of parsed.error?.issues ?? []) {
+    context.addIssue({
+      code: 'custom',
+      path: [field, ...issue.path],
+      message:
+        issue.code === 'unrecognized_keys'
+          ? `must not be given for ${entry.name}: ${issue.keys.join(', ')}`
+          : issue.message,
+    });
+  }
+}
+
+/** A plan, with what its measure and null ask for. */
+export const planSchema = planShape.superRefine((plan, context) => {
+  checkSettings(measureOf(plan.measure), plan.measureSettings, 'measureSettings', context);
+  checkSettings(nullModelOf(plan.null), plan.nullSettings, 'nullSettings', context);
+});
+
 /** A contrast's definition, whole: what is locked, hashed and run. */
 export type Plan = z.infer<typeof planSchema>;
 export type Rule = z.infer<typeof ruleSchema>;
 export type PairRule = z.infer<typeof pairsSchema>;
-export type FrequencyRule = z.infer<typeof frequenciesSchema>;
 export type Tail = Plan['test']['tail'];

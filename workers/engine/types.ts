@@ -99,6 +99,8 @@ export interface PairBlock {
   maxStatistic: Float32Array;
   /** Largest cluster mass over the block's pairs and the tail's signs. */
   maxClusterMass: Float32Array;
+  /** What single corrections need besides, by their id: see correct/part.ts. */
+  parts: Record<string, Float32Array>;
 }
 
 /** The merged maps and distributions of all pairs: a PairBlock with firstPair 0 and all pairs. */

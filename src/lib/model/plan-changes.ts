@@ -1,4 +1,14 @@
-import { correctionOf, measureOf, nullModelOf, phaseMethods, type Plan, type Rule } from '$engine';
+import {
+  correctionOf,
+  measureOf,
+  nullModelOf,
+  phaseMethod,
+  type Plan,
+  type Rule,
+  type SettingField,
+  type Settings,
+} from '$engine';
+import { settingOf } from './phase-draft';
 import { fieldName } from './plan-fields';
 
 /** One choice that differs between two versions of a plan, before and after in words. */
@@ -48,6 +58,7 @@ function frequencyWords(rule: Plan['phase']['frequencies']): string {
 function referenceWords(reference: Plan['epoch']['reference']): string {
   if (reference.kind === 'recorded') return 'as recorded';
   if (reference.kind === 'average') return 'mean of all analysed sites';
+  if (reference.kind === 'laplacian') return 'surface Laplacian of the analysed sites';
   return `mean of ${list(reference.sites)}`;
 }
 
@@ -57,8 +68,32 @@ export const tailWords: Record<Plan['test']['tail'], string> = {
   'b-greater': 'more in B',
 };
 
-function methodName(id: Plan['phase']['method']): string {
-  return phaseMethods.find((method) => method.id === id)?.name ?? id;
+/** "a block is a run of epochs; epochs or minutes in a block 20"; empty where nothing is asked. */
+function settingWords(
+  entry: { settings?: readonly SettingField[] },
+  given: Settings | undefined,
+): string {
+  return (entry.settings ?? [])
+    .map((setting) => {
+      const value = given?.[setting.key] ?? setting.initial;
+      if (setting.kind === 'number') {
+        return `${setting.name} ${number(Number(value))}${setting.unit ? ` ${setting.unit}` : ''}`;
+      }
+      const chosen = setting.options.find((option) => option.value === value);
+      return `${setting.name} ${chosen?.name ?? value}`;
+    })
+    .join('; ');
+}
+
+function phaseChoices(phase: Plan['phase']): [string, string, unknown][] {
+  return phaseMethod(phase.method).fields.map((field) => {
+    const value = settingOf(phase, field.path);
+    const words =
+      field.kind === 'choice'
+        ? (field.options.find((option) => option.value === value)?.label ?? String(value))
+        : `${number(value as number)}${field.unit ? ` ${field.unit}` : ''}`;
+    return [`phase.${field.path}`, words, value];
+  });
 }
 
 function correctionWords([claim, ...others]: Plan['test']['corrections']): string {
@@ -89,14 +124,20 @@ function choices(plan: Plan): [string, string, unknown][] {
     ['epoch.reject.byHand', `${epoch.reject.byHand.length} marked`, epoch.reject.byHand],
     ['sites', `${plan.sites.length}: ${list(plan.sites, 600)}`, plan.sites],
     ['pairs', pairWords(plan.pairs), plan.pairs],
-    ['phase.method', methodName(phase.method), phase.method],
+    ['phase.method', phaseMethod(phase.method).name, phase.method],
     ['phase.frequencies', frequencyWords(phase.frequencies), phase.frequencies],
-    ['phase.cycles', `${number(phase.cycles.from)} to ${number(phase.cycles.to)}`, phase.cycles],
+    ...phaseChoices(phase),
     ['times.fromS', seconds(times.fromS), times.fromS],
     ['times.toS', seconds(times.toS), times.toS],
     ['times.stepS', seconds(times.stepS), times.stepS],
     ['measure', measureOf(plan.measure).name, plan.measure],
+    [
+      'measureSettings',
+      settingWords(measureOf(plan.measure), plan.measureSettings),
+      plan.measureSettings,
+    ],
     ['null', nullModelOf(plan.null).name, plan.null],
+    ['nullSettings', settingWords(nullModelOf(plan.null), plan.nullSettings), plan.nullSettings],
     ['test.tail', tailWords[test.tail], test.tail],
     ['test.alpha', number(test.alpha), test.alpha],
     ['test.permutations', test.permutations.toLocaleString('en'), test.permutations],
@@ -106,17 +147,27 @@ function choices(plan: Plan): [string, string, unknown][] {
   ];
 }
 
-/** Which choices of `now` differ from those of `before`, in the order of the form. */
+/**
+ * Which choices of `now` differ from those of `before`, in the order of the form; settings of a phase
+ * method that only one of the two has are said with it.
+ */
 export function planChanges(before: Plan, now: Plan): PlanChange[] {
   const old = choices(before);
-  return choices(now).flatMap(([field, after, value], i) => {
-    const [, beforeWords, beforeValue] = old[i];
+  const next = choices(now);
+  const both = [...next, ...old.filter(([field]) => !next.some(([other]) => other === field))];
+  return both.flatMap(([field]) => {
+    const [, beforeWords, beforeValue] = old.find(([other]) => other === field) ?? absent;
+    const [, after, value] = next.find(([other]) => other === field) ?? absent;
     if (JSON.stringify(value) === JSON.stringify(beforeValue)) return [];
     return [{ field, name: fieldName(field), before: beforeWords, after }];
   });
 }
 
+const absent = ['', 'none', undefined] as const;
+
 /** A plan as people read it: each choice by its name, in the order of the form. */
 export function planInWords(plan: Plan): { field: string; name: string; words: string }[] {
-  return choices(plan).map(([field, words]) => ({ field, name: fieldName(field), words }));
+  return choices(plan)
+    .filter(([, words]) => words !== '')
+    .map(([field, words]) => ({ field, name: fieldName(field), words }));
 }

@@ -1,5 +1,6 @@
 import {
   consequencesOf,
+  phaseMethod,
   planEpochs,
   PlanError,
   type Consequences,
@@ -49,25 +50,24 @@ function ruleIssues(plan: Plan, recordings: readonly StudyRecording[]): PlanIssu
 }
 
 /** What would bring most of the lost epochs back. */
-function remedy(lost: readonly LostEpoch[]): string {
+function remedy(plan: Plan, lost: readonly LostEpoch[]): string {
   const of = (reason: LossReason) => lost.filter((epoch) => epoch.reason === reason).length;
-  const [[reason, count]] = Object.entries(remedies)
+  const [[reason, count]] = Object.entries(remedies(plan))
     .map(([key, words]) => [words, of(key as LossReason)] as const)
     .sort(([, x], [, y]) => y - x);
   return count > 0 ? reason : 'choose more events, or space them closer';
 }
 
-const remedies: Record<LossReason, string> = {
-  'guard-leaves-recording':
-    'shorten the window, raise the lowest frequency or lower its cycles, which shortens the guard',
+const remedies = (plan: Plan): Record<LossReason, string> => ({
+  'guard-leaves-recording': `shorten the window, raise the lowest frequency or ${phaseMethod(plan.phase.method).shorter}: that shortens the guard`,
   'crosses-gap': 'shorten the window, so that fewer epochs cross a gap of the recording',
   'above-limit': 'raise the limit in µV, or leave the sites out that break it',
   flat: 'lower the limit for flat, or leave the flat sites out',
   'by-hand': 'take some marks back',
-};
+});
 
 /** Without two epochs of each condition there is nothing to compare. */
-function countIssues({ epochs, lost }: Consequences): PlanIssue[] {
+function countIssues(plan: Plan, { epochs, lost }: Consequences): PlanIssue[] {
   return (['a', 'b'] as const)
     .filter((condition) => epochs[condition] < 2)
     .map((condition) => {
@@ -75,7 +75,7 @@ function countIssues({ epochs, lost }: Consequences): PlanIssue[] {
       const count = gone.length > 0 ? `; ${gone.length} are left out` : '';
       return {
         field: `${condition}.rules`,
-        message: `Needs at least 2 epochs, has ${epochs[condition]}${count}: ${remedy(gone)}.`,
+        message: `Needs at least 2 epochs, has ${epochs[condition]}${count}: ${remedy(plan, gone)}.`,
       };
     });
 }
@@ -98,7 +98,7 @@ export function checkPlan(
     );
     return {
       issues: [
-        ...countIssues(consequences),
+        ...countIssues(plan, consequences),
         ...stops.map(({ message }) => ({ field: 'sites', message })),
       ],
       consequences,

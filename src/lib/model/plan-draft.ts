@@ -1,7 +1,7 @@
 import { z } from 'zod';
-import { correctionIds, measureIds, nullIds, type Plan, type Rule } from '$engine';
-
+import { correctionIds, measureIds, nullIds, type Plan, type Rule, type Settings } from '$engine';
 import { numberText } from './number-text';
+import { newPhaseDraft, phaseDraftSchema, phaseToDraft, withPhase } from './phase-draft';
 
 // What a person has typed so far. Numbers stay text, so that "abc" or an empty field survives a
 // reload and is reported beside its field; values of a choice that is not taken now are kept too.
@@ -23,7 +23,7 @@ const conditionDraftSchema = z.strictObject({
   rules: z.array(ruleDraftSchema).max(50),
 });
 
-export const planDraftSchema = z.strictObject({
+const wholeDraftSchema = z.strictObject({
   format: z.literal('nullwright-draft/1'),
   question: z.string().max(4000),
   participant: typed,
@@ -33,7 +33,7 @@ export const planDraftSchema = z.strictObject({
     fromS: typed,
     toS: typed,
     detrend: z.enum(['mean', 'line']),
-    reference: z.enum(['recorded', 'average', 'channels']),
+    reference: z.enum(['recorded', 'average', 'channels', 'laplacian']),
     referenceSites: names,
     aboveUv: typed,
     flatBelowUv: typed,
@@ -57,9 +57,11 @@ export const planDraftSchema = z.strictObject({
     spacing: z.enum(['log', 'linear']),
     list: z.string().max(4000),
   }),
-  cycles: z.strictObject({ from: typed, to: typed }),
+  phase: phaseDraftSchema,
   times: z.strictObject({ fromS: typed, toS: typed, stepS: typed }),
   measure: z.enum(measureIds),
+  /** What measures, nulls and phase methods ask for besides, as `id.key`; absent: as they begin. */
+  settings: z.record(z.string().max(100), typed).default({}),
   null: z.enum(nullIds),
   test: z.strictObject({
     tail: z.enum(['two-sided', 'a-greater', 'b-greater']),
@@ -71,6 +73,8 @@ export const planDraftSchema = z.strictObject({
     seed: typed,
   }),
 });
+
+export const planDraftSchema = z.preprocess(withPhase, wholeDraftSchema);
 
 export type PlanDraft = z.infer<typeof planDraftSchema>;
 export type ConditionDraft = PlanDraft['a'];
@@ -108,9 +112,10 @@ export function newDraft(question: string, seed: string): PlanDraft {
       spacing: 'log',
       list: '',
     },
-    cycles: { from: '4', to: '8' },
+    phase: newPhaseDraft(),
     times: { fromS: '0', toS: '0.6', stepS: '0.05' },
     measure: 'ispc',
+    settings: {},
     null: 'labels',
     test: {
       tail: 'two-sided',
@@ -132,6 +137,20 @@ function ruleToDraft(rule: Rule): RuleDraft {
     toS: numberText(rule.toS),
     everyS: numberText(rule.everyS),
   };
+}
+
+function settingsToDraft(id: string, settings: Settings = {}): PlanDraft['settings'] {
+  return Object.fromEntries(
+    Object.entries(settings).map(([key, value]) => [
+      settingKey(id, key),
+      typeof value === 'number' ? numberText(value) : value,
+    ]),
+  );
+}
+
+/** Where the draft keeps what an entry of a registry asks for. */
+export function settingKey(id: string, key: string): string {
+  return `${id}.${key}`;
 }
 
 function pairsToDraft(pairs: Plan['pairs'], empty: PlanDraft['pairs']): PlanDraft['pairs'] {
@@ -190,16 +209,17 @@ export function planToDraft(plan: Plan): PlanDraft {
     sites: [...plan.sites],
     pairs: pairsToDraft(plan.pairs, empty.pairs),
     frequencies: frequenciesToDraft(plan.phase.frequencies, empty.frequencies),
-    cycles: {
-      from: numberText(plan.phase.cycles.from),
-      to: numberText(plan.phase.cycles.to),
-    },
+    phase: phaseToDraft(plan.phase),
     times: {
       fromS: numberText(plan.times.fromS),
       toS: numberText(plan.times.toS),
       stepS: numberText(plan.times.stepS),
     },
     measure: plan.measure,
+    settings: {
+      ...settingsToDraft(plan.measure, plan.measureSettings),
+      ...settingsToDraft(plan.null, plan.nullSettings),
+    },
     null: plan.null,
     test: {
       tail: plan.test.tail,

@@ -1,3 +1,5 @@
+import { phaseMethods, type PhaseField } from '$engine';
+
 /**
  * The name of each choice of a plan, in the words of the form, by its path in the plan. Issues and
  * lists of changes use the same words.
@@ -24,15 +26,14 @@ const names: Record<string, string> = {
   'phase.frequencies.fromHz': 'Frequencies, from',
   'phase.frequencies.toHz': 'Frequencies, to',
   'phase.frequencies.steps': 'Frequencies, steps',
-  'phase.cycles': 'Cycles',
-  'phase.cycles.from': 'Cycles, from',
-  'phase.cycles.to': 'Cycles, to',
   times: 'Times',
   'times.fromS': 'Times, from',
   'times.toS': 'Times, to',
   'times.stepS': 'Times, every',
   measure: 'Measure',
+  measureSettings: 'Measure, settings',
   null: 'Null',
+  nullSettings: 'Null, settings',
   'test.tail': 'Tail',
   'test.alpha': 'Alpha',
   'test.permutations': 'Permutations',
@@ -40,6 +41,10 @@ const names: Record<string, string> = {
   'test.clusterFormingZ': 'Cluster-forming z',
   'test.seed': 'Seed',
 };
+
+for (const { path, name } of phaseMethods.flatMap<PhaseField>((method) => method.fields)) {
+  names[`phase.${path}`] = name;
+}
 
 /** The form's word for a path; a path without one is named by the nearest above it that has. */
 export function fieldName(path: string): string {

@@ -1,6 +1,14 @@
-import { planSchema, type Plan } from '$engine';
+import {
+  measureOf,
+  nullModelOf,
+  planSchema,
+  type Plan,
+  type SettingField,
+  type Settings,
+} from '$engine';
 import { readCount, readNumber } from './number-text';
-import type { ConditionDraft, PlanDraft, RuleDraft } from './plan-draft';
+import { settingKey, type ConditionDraft, type PlanDraft, type RuleDraft } from './plan-draft';
+import { phaseSettings } from './phase-draft';
 import { issuesOf, planIssue, type PlanIssue } from './plan-issues';
 
 export type ParsedDraft =
@@ -72,6 +80,23 @@ function pairs(draft: PlanDraft['pairs']) {
   }
 }
 
+/** What an entry asks for, under `field`; nothing where it asks for nothing. */
+function settingsOf(
+  read: NumberReader,
+  field: string,
+  entry: { id: string; settings?: readonly SettingField[] },
+  typed: PlanDraft['settings'],
+): Record<string, Settings> {
+  if (!entry.settings) return {};
+  const values = entry.settings.map((setting): [string, number | string] => {
+    const text = typed[settingKey(entry.id, setting.key)];
+    if (text === undefined) return [setting.key, setting.initial];
+    if (setting.kind === 'choice') return [setting.key, text];
+    return [setting.key, read.read(`${field}.${setting.key}`, text)];
+  });
+  return { [field]: Object.fromEntries(values) };
+}
+
 function frequencies(read: NumberReader, draft: PlanDraft['frequencies']) {
   const field = 'phase.frequencies';
   if (draft.kind === 'list') return { kind: 'list', hz: read.list(`${field}.hz`, draft.list) };
@@ -127,12 +152,8 @@ export function draftToPlan(draft: PlanDraft, names: ReadonlyMap<string, string>
     sites: draft.sites,
     pairs: pairs(draft.pairs),
     phase: {
-      method: 'morlet',
+      ...phaseSettings(draft.phase, (field, text) => read.read(field, text)),
       frequencies: frequencies(read, draft.frequencies),
-      cycles: {
-        from: read.read('phase.cycles.from', draft.cycles.from),
-        to: read.read('phase.cycles.to', draft.cycles.to),
-      },
     },
     times: {
       fromS: read.read('times.fromS', draft.times.fromS),
@@ -140,7 +161,9 @@ export function draftToPlan(draft: PlanDraft, names: ReadonlyMap<string, string>
       stepS: read.read('times.stepS', draft.times.stepS),
     },
     measure: draft.measure,
+    ...settingsOf(read, 'measureSettings', measureOf(draft.measure), draft.settings),
     null: draft.null,
+    ...settingsOf(read, 'nullSettings', nullModelOf(draft.null), draft.settings),
     test: {
       tail: draft.test.tail,
       alpha: read.read('test.alpha', draft.test.alpha),

@@ -49,7 +49,8 @@ export interface PairValues {
 
 /** The distribution of the maximum over all features, with what a correction does with it. */
 export interface MaximumNull {
-  kind: 'max-statistic' | 'cluster-mass';
+  /** The correction whose maxima these are. */
+  kind: string;
   surrogates: Float32Array;
   mean: number;
   sd: number;

@@ -1,5 +1,5 @@
 import { histogramBins, type Axes, type RunMaps } from '$engine';
-import type { NpyDtype } from './npy';
+import type { NpyDtype } from '$workers/engine/npy';
 
 interface MapKind {
   dtype: NpyDtype;

@@ -53,6 +53,8 @@ export const timingsSchema = z.strictObject({
 });
 export type Timings = z.infer<typeof timingsSchema>;
 
+/** About 20 MB of JSON; the step-down's intervals of 100,000 permutations stay below. */
+const mostPartValues = 1_000_000;
 const distribution = z.array(z.number()).max(100_000);
 export const runSummarySchema = z.strictObject({
   planHash: sha256,
@@ -65,6 +67,8 @@ export const runSummarySchema = z.strictObject({
   lost: z.array(lostEpochSchema).max(200_000),
   maxStatistic: distribution,
   clusterMass: distribution,
+  /** What single corrections of the plan need besides, by their id; the engine checks them. */
+  parts: z.record(z.string(), z.array(z.number()).max(mostPartValues)).optional(),
   timings: timingsSchema,
 });
 /** What a browser or the headless runner says of its finished run, besides the maps. */

@@ -1,4 +1,4 @@
-import { parseNpy, type NpyArray } from '$lib/model/npy';
+import { parseNpy, type NpyArray } from '$workers/engine/npy';
 
 /** Everything a run keeps of one pair, `[frequency][time]` each. */
 export interface PairSlices {

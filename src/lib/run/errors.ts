@@ -1,3 +1,5 @@
+import { PoolError } from '$workers/run/pool-error';
+
 /** What can go wrong on the browser's side of a run; the page words the remedy by the code. */
 export type RunErrorCode =
   | 'not-isolated'
@@ -32,6 +34,7 @@ export function isFinal(code: RunErrorCode): boolean {
 /** Any thrown value as a RunError; what carries no code of ours came from the engine. */
 export function asRunError(thrown: unknown): RunError {
   if (thrown instanceof RunError) return thrown;
+  if (thrown instanceof PoolError) return new RunError(thrown.code, thrown.message);
   const message = thrown instanceof Error ? thrown.message : String(thrown);
   return new RunError('engine', message, { cause: thrown });
 }

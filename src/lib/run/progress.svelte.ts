@@ -1,6 +1,6 @@
 import type { PairBlock } from '$engine';
 import { Rate } from './rate';
-import type { Range } from './split';
+import type { Range } from '$workers/run/split';
 
 export interface WorkerLine {
   doing: string;

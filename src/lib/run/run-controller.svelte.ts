@@ -1,6 +1,14 @@
 import { transfer } from 'comlink';
-import { axesOf, engineVersion, planEpochs, withoutLost } from '$engine';
-import type { Axes, Epoch, LostEpoch, PairBlock, Plan, RecordingFacts } from '$engine';
+import { axesOf, BlockGatherer, engineVersion, partLists, planEpochs, withoutLost } from '$engine';
+import type {
+  Axes,
+  Epoch,
+  GatheredBlocks,
+  LostEpoch,
+  PairBlock,
+  Plan,
+  RecordingFacts,
+} from '$engine';
 import type { RunChange, RunSummary, Timings } from '$lib/model/run';
 import type { RecordingInput, SharedPhases } from '$workers/protocol';
 import { Checkpoints, type RunIdentity } from './checkpoints';
@@ -8,13 +16,14 @@ import { createEngineWorker } from './engine-worker';
 import { tallyOf, type EpochTally } from './epoch-tally';
 import { asRunError, isFinal, RunError } from './errors';
 import { isolationTrouble } from './isolation';
-import { WorkerPool } from './pool';
+import { buffersOf } from '$workers/run/buffers';
+import { WorkerPool } from '$workers/run/pool';
 import { PairProgress } from './progress.svelte';
 import { fetchRecording, type FetchProgress, type RecordingRef } from './recording-cache';
 import { changeRun, createRun } from './run-api';
 import { holdRunLock } from './run-lock';
-import { rangesLeft } from './split';
-import { draws, pairBlocks, phases, screen, type StepContext } from './steps';
+import { rangesLeft } from '$workers/run/split';
+import { draws, pairBlocks, phases, screen, type StepContext } from '$workers/run/steps';
 import { upload } from './upload';
 
 export type RunStatus = 'idle' | 'running' | 'paused' | 'stopped' | 'failed' | 'finished';
@@ -184,10 +193,10 @@ export class RunController {
       this.#screen(context, identity, kept?.screened ?? null),
     );
     const shared = await this.#timed('phasesS', () => this.#phases(context, epochs));
-    const blocks = await this.#timed('pairsS', () =>
+    const gathered = await this.#timed('pairsS', () =>
       this.#permute(context, identity, shared, kept?.blocks ?? []),
     );
-    await this.#finish(context, identity, shared, blocks);
+    await this.#finish(context, identity, shared, gathered);
   }
 
   #openPool(axes: Axes, recordings: RecordingInput[]): StepContext {
@@ -260,10 +269,11 @@ export class RunController {
     identity: RunIdentity,
     shared: SharedPhases,
     done: PairBlock[],
-  ): Promise<PairBlock[]> {
+  ): Promise<GatheredBlocks> {
     this.step = 'permuting';
     const drawn = await draws(context, shared);
-    const blocks = [...done];
+    const gatherer = new BlockGatherer(context.axes, context.plan.test);
+    for (const block of done) gatherer.add(block);
     const left = rangesLeft(
       context.axes.pairs.length,
       done.map(({ firstPair, pairCount }) => ({ from: firstPair, to: firstPair + pairCount })),
@@ -275,27 +285,29 @@ export class RunController {
       {
         pair: (range, pairsDone, worker) => this.pairs?.pair(range, pairsDone, worker),
         block: (block, worker) => {
-          blocks.push(block);
+          gatherer.add(block);
           this.pairs?.block(block, worker);
           void this.#checkpoints?.saveBlock(identity.runId, block);
           this.#reportProgress();
         },
       },
     );
-    return blocks;
+    return gatherer.finish();
   }
 
   async #finish(
     { pool, plan, axes }: StepContext,
     { runId }: RunIdentity,
     shared: SharedPhases,
-    blocks: PairBlock[],
+    gathered: GatheredBlocks,
   ): Promise<void> {
     const epochs = this.epochs as EpochTally;
     this.step = 'concluding';
     const counts = { epochsA: shared.epochsA, epochsB: shared.epochsB };
     const { maps, outcome } = await this.#timed('concludeS', () =>
-      pool.run((api) => api.conclude(plan, axes, counts, transfer(blocks, buffersOf(blocks)))),
+      pool.run((api) =>
+        api.conclude(plan, axes, counts, transfer(gathered, buffersOf(gathered.maps))),
+      ),
     );
     const angles = await pool.run((api) => api.phaseBytes(plan, axes, shared));
     await this.#gate();
@@ -310,6 +322,7 @@ export class RunController {
       lost: epochs.lost,
       maxStatistic: Array.from(maps.maxStatistic),
       clusterMass: Array.from(maps.maxClusterMass),
+      parts: partLists(maps),
       timings: this.#timings,
     };
     await upload(runId, axes, { maps, phases: angles }, summary, (bytes, total) => {
@@ -345,13 +358,4 @@ export class RunController {
     await changeRun(this.runId, change).catch(() => undefined);
     if (change.state) this.reported += 1;
   }
-}
-
-/** The maps' memory goes over to the worker instead of being copied. */
-function buffersOf(blocks: PairBlock[]): Transferable[] {
-  return blocks.flatMap((block) =>
-    Object.values(block).flatMap((value: PairBlock[keyof PairBlock]) =>
-      typeof value === 'number' ? [] : [value.buffer as ArrayBuffer],
-    ),
-  );
 }

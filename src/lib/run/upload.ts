@@ -1,5 +1,5 @@
 import type { PairBlock } from '$engine';
-import { npyParts } from '$lib/model/npy';
+import { npyParts } from '$workers/engine/npy';
 import { mapField, mapShape, sentMapNames } from '$lib/model/run-maps';
 import type { Axes } from '$engine';
 import type { RunSummary } from '$lib/model/run';

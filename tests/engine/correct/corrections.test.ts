@@ -1,10 +1,8 @@
 import fc from 'fast-check';
 import { describe, expect, test } from 'vitest';
 import { corrections, permutationP, ties } from '../../../workers/engine';
-import {
-  adjustFalseDiscovery,
-  benjaminiHochberg,
-} from '../../../workers/engine/correct/benjamini-hochberg';
+import { benjaminiHochberg } from '../../../workers/engine/correct/benjamini-hochberg';
+import { adjustFalseDiscovery } from '../../../workers/engine/correct/false-discovery';
 import { clusterMass } from '../../../workers/engine/correct/cluster-mass';
 import { maxStatistic } from '../../../workers/engine/correct/max-statistic';
 import { evidenceOf, plainAxes, plainMaps } from './evidence';

@@ -22,6 +22,7 @@ export interface PlainMaps {
   maxStatistic?: number[];
   maxClusterMass?: number[];
   nullSd?: number[];
+  parts?: Record<string, Float32Array>;
 }
 
 /** Maps with the numbers that matter to a test; the others fit and say nothing. */
@@ -39,6 +40,7 @@ export function plainMaps(permutations: number, given: PlainMaps): ClaimMaps {
     lower: Uint32Array.from(given.lower ?? flat(permutations)),
     maxStatistic: Float32Array.from(given.maxStatistic ?? many(0)),
     maxClusterMass: Float32Array.from(given.maxClusterMass ?? many(0)),
+    parts: given.parts ?? {},
   };
 }
 
@@ -54,6 +56,7 @@ export function evidenceOf(
     maps,
     tail,
     alpha,
+    clusterFormingZ,
     permutations,
     p: Float64Array.from(maps.z, (_, x) =>
       tailP(tailExceedances(maps.upper[x], maps.lower[x], tail), permutations, tail),

@@ -3,11 +3,13 @@ import { beforeAll, describe, expect, test } from 'vitest';
 import {
   computePairs,
   conclude,
+  correctionIds,
   concludeFrom,
   drawPermutations,
   drawsByteLength,
   mergeBlocks,
   nullIds,
+  type CorrectionId,
   type Outcome,
   type PairBlock,
 } from '../../../workers/engine';
@@ -27,9 +29,7 @@ const anyOrder = <T>(list: T[]) =>
 const permutations = 399;
 
 const everything = {
-  corrections: ['max-statistic', 'cluster-mass', 'benjamini-hochberg'] as (
-    'max-statistic' | 'cluster-mass' | 'benjamini-hochberg'
-  )[],
+  corrections: [...correctionIds],
   clusterFormingZ: 1.5,
   alpha: 0.05,
   permutations,
@@ -71,7 +71,7 @@ describe.each(nullIds)('a run under %s', (nullId) => {
         const blocks = pairRanges.map((range) =>
           computePairs(run.plan, run.axes, range, phases, { buffer: draws }),
         );
-        const maps = mergeBlocks(blocks, run.axes, permutations);
+        const maps = mergeBlocks(blocks, run.axes, run.plan.test);
         expect(await conclude(run.plan, run.axes, run.counts, maps)).toEqual(expected);
       }),
       { numRuns: 15 },
@@ -79,12 +79,18 @@ describe.each(nullIds)('a run under %s', (nullId) => {
   });
 
   test('claims the planted pair, and no other where the family-wise error is kept', () => {
-    const [maxima, clusters, discoveries] = expected.corrections.map(
-      ({ edges }) => new Set(edges.map((edge) => edge.pair)),
-    );
-    expect(maxima).toEqual(new Set([0]));
-    expect(clusters).toEqual(new Set([0]));
-    expect(discoveries).toContain(0);
+    const claimed = (id: CorrectionId) =>
+      new Set(expected.corrections.find((each) => each.id === id)!.edges.map((edge) => edge.pair));
+    expect(claimed('max-statistic')).toEqual(new Set([0]));
+    expect(claimed('cluster-mass')).toEqual(new Set([0]));
+    for (const id of [
+      'step-down-maximum',
+      'cluster-size',
+      'threshold-free-enhancement',
+      'benjamini-hochberg',
+    ] as const) {
+      expect(claimed(id)).toContain(0);
+    }
   });
 
   test('is drawn again by another seed, with another digest', async () => {
@@ -98,8 +104,8 @@ describe.each(nullIds)('a run under %s', (nullId) => {
 
   test('is concluded again from what a server is sent', () => {
     const { z, upper, lower, maxStatistic, maxClusterMass, ...rest } = mapsOf(run);
-    const { observedA, observedB, lagA, lagB, nullSd } = rest;
-    const sent = { z, upper, lower, maxStatistic, maxClusterMass };
+    const { observedA, observedB, lagA, lagB, nullSd, parts } = rest;
+    const sent = { z, upper, lower, maxStatistic, maxClusterMass, parts };
     const again = concludeFrom(run.plan, run.axes, {
       ...structuredClone(sent),
       ...{ observedA, observedB, lagA, lagB, nullSd },
@@ -141,14 +147,16 @@ describe('mergeBlocks', () => {
   const draws = { buffer: drawAll(run) };
   const block = (from: number, to: number) =>
     computePairs(run.plan, run.axes, { from, to }, phases, draws);
-  const merge = (blocks: PairBlock[]) => () => mergeBlocks(blocks, run.axes, permutations);
+  const merge = (blocks: PairBlock[]) => () => mergeBlocks(blocks, run.axes, run.plan.test);
 
   test('refuses gaps, overlaps, missing pairs and blocks of another shape', () => {
     expect(merge([block(0, 2), block(3, 6)])).toThrow('begins at pair 3 where pair 2 is next');
     expect(merge([block(0, 3), block(2, 6)])).toThrow('begins at pair 2 where pair 3 is next');
     expect(merge([block(0, 5)])).toThrow('5 of 6 pairs are there');
     expect(merge([{ ...block(0, 6), z: new Float32Array(3) }])).toThrow('z of the block at pair 0');
-    expect(() => mergeBlocks([block(0, 6)], run.axes, permutations - 1)).toThrow('maxStatistic');
+    expect(() =>
+      mergeBlocks([block(0, 6)], run.axes, { ...run.plan.test, permutations: permutations - 1 }),
+    ).toThrow('maxStatistic');
   });
 });
 

@@ -34,6 +34,11 @@ const trueNull: Record<NullId, (seed: string) => PhaseOf> = {
     const random = seedrandom(seed);
     return (site, epoch) => 2.4 * epoch + (site === 0 ? 0 : 1) + 3 * random();
   },
+  'labels-within-blocks': (seed) => {
+    const random = seedrandom(seed);
+    // The synchrony drifts from block to block; within a block A and B are alike.
+    return (site, epoch) => 2.4 * epoch + (site === 0 ? 0 : 1) + 3 * random();
+  },
   'trial-order': (seed) => {
     const random = seedrandom(seed);
     return (_, __, f, s) => 0.5 * f + 0.3 * s + 4 * random();

@@ -8,7 +8,8 @@ import {
   ties,
   type Plan,
 } from '../../../workers/engine';
-import { pairStatistic } from '../../../workers/engine/null/pair-statistic';
+import { chooseKernels, newKernels } from '../../../workers/kernels';
+import { PairNull, type NullSettings } from '../../../workers/engine/null/pair-null';
 import { nullModelOf } from '../../../workers/engine/null/registry';
 import { runInput } from '../../../workers/engine/run-input';
 import { naiveFeature, naiveLargestMass, type NaiveFeature } from './naive';
@@ -25,6 +26,16 @@ function everyFeature(run: TinyRun, draws: SharedArrayBuffer): NaiveFeature[] {
     ),
   );
 }
+
+const mapSettings: NullSettings = {
+  frequencyCount: F,
+  timeCount: T,
+  tailSign: 0,
+  clusterFormingZ: 1,
+  binCount: 24,
+  binsPerUnit: 2,
+  binOffset: 12,
+};
 
 const signsOf = { 'two-sided': [1, -1], 'a-greater': [1], 'b-greater': [-1] } as const;
 
@@ -79,29 +90,35 @@ describe.each(nullIds)('computePairs under %s', (nullId) => {
     expect(last.histogram).toEqual(whole.histogram.subarray(2 * points * histogramBins.count));
   });
 
-  test('makes the same surrogates in tiles as at once', () => {
+  test('gives the same numbers in tiles as at once', () => {
     const run = tinyRun(noise('tiles'), { nullId });
-    const input = runInput(
-      run.plan,
-      run.axes,
-      { buffer: run.phases, ...run.counts },
-      {
-        buffer: drawAll(run),
-      },
-    );
-    const seen = [1e6, 10 * points, 1].map((limit) => {
-      const statistic = pairStatistic(nullModelOf(nullId), input, limit);
-      const observed = new Float64Array(points);
-      const flat = new Float64Array(points).fill(0.5);
-      statistic.begin({ j: 0, k: 2 }, flat, flat, observed);
-      const passes = [[], []] as number[][];
-      for (const pass of passes) statistic.surrogates.statistic((values) => pass.push(...values));
-      return { observed: [...observed], passes };
+    const phases = { buffer: run.phases, ...run.counts };
+    const input = runInput(run.plan, run.axes, phases, { buffer: drawAll(run) });
+    const seen = [1e6, 10 * points, 1].map((tileValues) => {
+      const settings = { ...mapSettings, tileValues };
+      const nulls = new PairNull(nullModelOf(nullId), input, newKernels(), settings);
+      nulls.add(0, 1);
+      nulls.add(0, 2);
+      const { groups, best, masses, histogram, observed } = nulls;
+      return { groups, best, masses, histogram, observed };
     });
-    expect(seen[0].passes[0].length).toBe(points * 99);
-    expect(seen[0].passes[1]).toEqual(seen[0].passes[0]);
+    expect(Math.max(...seen[0].masses)).toBeGreaterThan(1);
     expect(seen[1]).toEqual(seen[0]);
     expect(seen[2]).toEqual(seen[0]);
+  });
+
+  test('gives the same digest’s counts with compiled and with plain kernels', () => {
+    // 21 features: two full groups of eight and one that is not.
+    const run = tinyRun(noise('kinds'), { nullId, frequencyCount: 3, timeCount: 7 });
+    const [compiled, plain] = (['compiled', 'plain'] as const).map((kind) => {
+      chooseKernels(kind);
+      return mapsOf(run);
+    });
+    chooseKernels('auto');
+    expect({ ...compiled, maxClusterMass: null }).toEqual({ ...plain, maxClusterMass: null });
+    for (const [p, mass] of compiled.maxClusterMass.entries()) {
+      expect(Math.abs(mass - plain.maxClusterMass[p])).toBeLessThanOrEqual(1e-6 * mass);
+    }
   });
 
   test('tells of each pair done', () => {

@@ -7,13 +7,19 @@ import { timeShift } from '../../../workers/engine/null/time-shift';
 import { trialOrder } from '../../../workers/engine/null/trial-order';
 import { noise, tinyRun } from './tiny-run';
 
-const anyShape = fc.record({
-  permutations: fc.integer({ min: 1, max: 12 }),
-  siteCount: fc.integer({ min: 2, max: 4 }),
-  epochsA: fc.integer({ min: 2, max: 30 }),
-  epochsB: fc.integer({ min: 2, max: 30 }),
-  windowSamples: fc.integer({ min: 1, max: 300 }),
-});
+const anyShape = fc
+  .record({
+    permutations: fc.integer({ min: 1, max: 12 }),
+    siteCount: fc.integer({ min: 2, max: 4 }),
+    epochsA: fc.integer({ min: 2, max: 30 }),
+    epochsB: fc.integer({ min: 2, max: 30 }),
+    windowSamples: fc.integer({ min: 1, max: 300 }),
+  })
+  .map((shape) => ({
+    ...shape,
+    // Three blocks, for nulls that keep to them.
+    blocks: Array.from({ length: shape.epochsA + shape.epochsB }, (_, n) => n % 3),
+  }));
 
 function drawn(model: NullModel, seed: string, shape: DrawShape): ArrayBuffer {
   const draws = new ArrayBuffer(model.drawsByteLength(shape));

@@ -29,6 +29,8 @@ function reader(run: TinyRun, samples: number) {
   };
 }
 
+const isLabels = (id: NullId) => id === 'labels' || id === 'labels-within-blocks';
+
 export function isWholeWindow(id: NullId): boolean {
   return id === 'time-shift';
 }
@@ -75,12 +77,12 @@ function conditions(
   const at = reader(run, samples);
   const kept = isWholeWindow(run.plan.null) ? 2 * t : t;
   const sites = run.axes.sites.length;
-  const words = run.plan.null === 'labels' ? new Uint16Array(0) : new Uint16Array(draws);
+  const words = isLabels(run.plan.null) ? new Uint16Array(0) : new Uint16Array(draws);
   const masks = new Uint8Array(draws);
   return (p: number | null): { a: number; b: number } => {
     const draw = (site: number, n: number) => words[((p ?? 0) * sites + site) * epochs + n];
     const term = (n: number): [Complex, Complex] => {
-      if (p === null || run.plan.null === 'labels') return [at(j, n, f, kept), at(k, n, f, kept)];
+      if (p === null || isLabels(run.plan.null)) return [at(j, n, f, kept), at(k, n, f, kept)];
       if (run.plan.null === 'trial-order') {
         return [at(j, draw(j, n), f, kept), at(k, draw(k, n), f, kept)];
       }
@@ -89,7 +91,7 @@ function conditions(
     };
     const blocks = Math.ceil(epochs / 7);
     const isA = (n: number) =>
-      p === null || run.plan.null !== 'labels'
+      p === null || !isLabels(run.plan.null)
         ? n < epochsA
         : ((masks[p * blocks + Math.floor(n / 7)] >> (n % 7)) & 1) === 1;
     const all = range(0, epochs);
@@ -110,7 +112,7 @@ export function naiveFeature(
   const measure = conditions(run, draws, run.axes.pairs[pair], f, t);
   const observed = measure(null);
   const made = range(0, run.plan.test.permutations).map((p) => measure(p));
-  const isDifference = run.plan.null === 'labels';
+  const isDifference = isLabels(run.plan.null);
   const own = {
     a: meanAndSd(made.map((m) => m.a)),
     b: meanAndSd(made.map((m) => m.b)),

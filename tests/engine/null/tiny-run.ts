@@ -4,6 +4,7 @@ import {
   conclude,
   drawPermutations,
   drawsByteLength,
+  epochBlocks,
   mergeBlocks,
   type Axes,
   type NullId,
@@ -49,6 +50,9 @@ export function tinyRun(phaseOf: PhaseOf, options: TinyOptions = {}): TinyRun {
   const plan = samplePlan({
     sites,
     null: options.nullId ?? 'labels',
+    ...(options.nullId === 'labels-within-blocks'
+      ? { nullSettings: { by: 'epochs', size: 8 } }
+      : {}),
     epoch: { ...base.epoch, fromS: 0, toS: (windowSamples - 1) / rateHz },
     phase: { ...base.phase, frequencies: { kind: 'list', hz } },
     times: { fromS: 0, toS: (2 * (timeCount - 1)) / rateHz, stepS: 2 / rateHz },
@@ -63,8 +67,16 @@ export function tinyRun(phaseOf: PhaseOf, options: TinyOptions = {}): TinyRun {
     timesS: Array.from({ length: timeCount }, (_, t) => (2 * t) / rateHz),
     samplingRateHz: rateHz,
   };
-  const counts = { epochsA, epochsB };
+  const counts = { epochsA, epochsB, blocks: blocksOf(plan, epochsA, epochsB) };
   return { plan, axes, counts, phases: fillPhases(plan, axes, counts, phaseOf) };
+}
+
+/** As if the epochs of A and B had taken turns in time as long as there were both. */
+function blocksOf(plan: Plan, epochsA: number, epochsB: number): number[] | undefined {
+  const epoch = (onsetS: number) => ({ recording: 'one', onsetS });
+  const a = Array.from({ length: epochsA }, (_, n) => epoch(2 * n));
+  const b = Array.from({ length: epochsB }, (_, n) => epoch(2 * n + 1));
+  return epochBlocks(plan, [...a, ...b]);
 }
 
 function fillPhases(plan: Plan, axes: Axes, counts: RunCounts, phaseOf: PhaseOf) {
@@ -99,7 +111,7 @@ export function mapsOf(run: TinyRun, draws: ArrayBufferLike = drawAll(run)): Run
   const range = { from: 0, to: run.axes.pairs.length };
   const phases = { buffer: run.phases, ...run.counts };
   const block = computePairs(run.plan, run.axes, range, phases, { buffer: draws });
-  return mergeBlocks([block], run.axes, run.plan.test.permutations);
+  return mergeBlocks([block], run.axes, run.plan.test);
 }
 
 export function outcomeOf(run: TinyRun, maps: RunMaps = mapsOf(run)): Promise<Outcome> {

@@ -1,5 +1,14 @@
 import fc from 'fast-check';
-import { correctionIds, measureIds, nullIds, type Plan } from '$engine';
+import {
+  correctionIds,
+  initialSettings,
+  measureIds,
+  measureOf,
+  nullIds,
+  nullModelOf,
+  type Plan,
+  type SettingField,
+} from '$engine';
 
 const number = (min: number, max: number) =>
   fc.double({ min, max, noNaN: true }).map((value) => (value === 0 ? 0 : value));
@@ -40,7 +49,7 @@ const epoch = fc.record({
   detrend: fc.constantFrom('mean' as const, 'line' as const),
   reference: fc.oneof(
     fc.constant({ kind: 'recorded' as const }),
-    fc.constant({ kind: 'average' as const }),
+    fc.constantFrom({ kind: 'average' as const }, { kind: 'laplacian' as const }),
     sites(1).map((list) => ({ kind: 'channels' as const, sites: list })),
   ),
   reject: fc.record({
@@ -90,6 +99,17 @@ function withRecordings(plan: Omit<Plan, 'recordings'>): Plan {
   return { ...plan, recordings };
 }
 
+/** With what its measure and null ask for, as they begin. */
+function withSettings(plan: Plan): Plan {
+  const measure: { settings?: readonly SettingField[] } = measureOf(plan.measure);
+  const model: { settings?: readonly SettingField[] } = nullModelOf(plan.null);
+  return {
+    ...plan,
+    ...(measure.settings ? { measureSettings: initialSettings(measure.settings) } : {}),
+    ...(model.settings ? { nullSettings: initialSettings(model.settings) } : {}),
+  };
+}
+
 /** Any plan that the schema takes. */
 export const arbitraryPlan: fc.Arbitrary<Plan> = fc
   .uniqueArray(sha256, { minLength: 1, maxLength: 3 })
@@ -103,11 +123,26 @@ export const arbitraryPlan: fc.Arbitrary<Plan> = fc
       epoch,
       sites: sites(2),
       pairs,
-      phase: fc.record({
-        method: fc.constant('morlet' as const),
-        frequencies,
-        cycles: fc.record({ from: number(1, 50), to: number(1, 50) }),
-      }),
+      phase: fc.oneof(
+        fc.record({
+          method: fc.constant('morlet' as const),
+          frequencies,
+          cycles: fc.record({ from: number(1, 50), to: number(1, 50) }),
+        }),
+        fc.record({
+          method: fc.constant('stft' as const),
+          frequencies,
+          taperS: number(0.1, 10),
+        }),
+        fc.record({
+          method: fc.constant('filter-hilbert' as const),
+          frequencies,
+          halfWidth: fc.oneof(
+            fc.record({ value: number(0.01, 0.9), unit: fc.constant('share' as const) }),
+            fc.record({ value: number(0.1, 10), unit: fc.constant('Hz' as const) }),
+          ),
+        }),
+      ),
       times: fc
         .record({ span, stepS: number(0.001, 10) })
         .map(({ span: [fromS, toS], stepS }) => ({ fromS, toS, stepS })),
@@ -116,4 +151,5 @@ export const arbitraryPlan: fc.Arbitrary<Plan> = fc
       test,
     }),
   )
-  .map(withRecordings);
+  .map(withRecordings)
+  .map(withSettings);

@@ -60,7 +60,14 @@ describe('plan drafts', () => {
     ['epoch.fromS', (plan, text) => edit(plan, (draft) => (draft.epoch.fromS = text))],
     ['epoch.toS', (plan, text) => edit(plan, (draft) => (draft.epoch.toS = text))],
     ['epoch.reject.aboveUv', (plan, text) => edit(plan, (draft) => (draft.epoch.aboveUv = text))],
-    ['phase.cycles.from', (plan, text) => edit(plan, (draft) => (draft.cycles.from = text))],
+    [
+      'phase.cycles.from',
+      (plan, text) =>
+        edit(plan, (draft) => {
+          draft.phase.method = 'morlet';
+          draft.phase.typed.morlet['cycles.from'] = text;
+        }),
+    ],
     ['times.stepS', (plan, text) => edit(plan, (draft) => (draft.times.stepS = text))],
     ['test.alpha', (plan, text) => edit(plan, (draft) => (draft.test.alpha = text))],
     ['test.permutations', (plan, text) => edit(plan, (draft) => (draft.test.permutations = text))],

@@ -1,8 +1,8 @@
 import fc from 'fast-check';
 import { describe, expect, it } from 'vitest';
 import { binValues } from '$lib/figures/bins';
-import { parseNpy, npyParts } from '$lib/model/npy';
-import { partSize, rangesLeft, splitRange } from '$lib/run/split';
+import { npyParts, parseNpy } from '../../../workers/engine/npy';
+import { partSize, rangesLeft, splitRange } from '../../../workers/run/split';
 
 const items = (ranges: { from: number; to: number }[]) =>
   ranges.flatMap(({ from, to }) => Array.from({ length: to - from }, (_, i) => from + i));

@@ -1,6 +1,13 @@
 import * as Comlink from 'comlink';
 import { afterAll, beforeAll, describe, expect, test, vi } from 'vitest';
-import { axesOf, drawsByteLength, layoutOf, planEpochs, type Plan } from '../../../workers/engine';
+import {
+  axesOf,
+  BlockGatherer,
+  drawsByteLength,
+  layoutOf,
+  planEpochs,
+  type Plan,
+} from '../../../workers/engine';
 import type { EngineWorkerApi, RecordingInput } from '../../../workers/protocol';
 import { simulatedPlan, simulatedRecording } from './simulated';
 
@@ -56,12 +63,12 @@ async function run(plan: Plan, cuts: { epochs: Ranges; draws: Ranges; pairs: Ran
     await worker.draws(plan, { ...counts, axes }, { from, to }, draws);
   }
   const heard: number[] = [];
-  const blocks = [];
+  const gatherer = new BlockGatherer(axes, plan.test);
   for (const [from, to] of cuts.pairs) {
     const onPair = Comlink.proxy((done: number) => heard.push(done));
-    blocks.push(await worker.pairs(plan, axes, { from, to }, phases, draws, onPair));
+    gatherer.add(await worker.pairs(plan, axes, { from, to }, phases, draws, onPair));
   }
-  const concluded = await worker.conclude(plan, axes, counts, blocks);
+  const concluded = await worker.conclude(plan, axes, counts, gatherer.finish());
   return { ...concluded, axes, counts, phases, lost, heard };
 }
 

@@ -1,5 +1,6 @@
 import { describe, expect, test } from 'vitest';
-import { edgesTsv, exportCautions, tsvCell } from '$lib/server/results/export-edges';
+import { edgesTsv } from '$lib/model/edge-table';
+import { exportCautions, tsvCell } from '$lib/model/result-table';
 import { sampleEdge } from '../../engine/result/sample-edge';
 
 describe('tsvCell', () => {
@@ -33,7 +34,7 @@ describe('edgesTsv', () => {
       frequenciesHz: [10],
       timesS: [0],
     };
-    const lines = edgesTsv([sampleEdge(), sampleEdge({ cluster: null })], axes).split('\n');
+    const lines = edgesTsv([sampleEdge(), sampleEdge({ cluster: null })], axes, 'ispc').split('\n');
     expect(lines.length).toBe(4);
     expect(lines[3]).toBe('');
     const cells = lines.slice(0, 3).map((line) => line.split('\t'));
@@ -50,7 +51,7 @@ describe('edgesTsv', () => {
       timesS: [0],
     };
     const edges = [sampleEdge({ lagARad: 0.05 }), sampleEdge({ lagARad: 0.71 })];
-    const [head, ...rows] = edgesTsv(edges, axes).trimEnd().split('\n');
+    const [head, ...rows] = edgesTsv(edges, axes, 'ispc').trimEnd().split('\n');
     const at = head!.split('\t').indexOf('lag_near_zero');
     expect(rows.map((row) => row.split('\t')[at])).toEqual(['true', 'false']);
   });
@@ -58,7 +59,11 @@ describe('edgesTsv', () => {
 
 describe('exportCautions', () => {
   test('a null without synchrony takes its caution along', () => {
-    expect(exportCautions('max-statistic', 'trial-order').join(' ')).toContain('no synchrony');
-    expect(exportCautions('max-statistic', 'labels').join(' ')).not.toContain('no synchrony');
+    expect(
+      exportCautions('max-statistic', { measure: 'ispc', null: 'trial-order' }).join(' '),
+    ).toContain('no synchrony');
+    expect(
+      exportCautions('max-statistic', { measure: 'ispc', null: 'labels' }).join(' '),
+    ).not.toContain('no synchrony');
   });
 });

@@ -1,10 +1,10 @@
 import { afterAll, beforeAll, describe, expect, test } from 'vitest';
 import { connect } from '$lib/server/database/connect';
+import { edgesTsv } from '$lib/model/edge-table';
 import { unpackEdges } from '$lib/model/packed-edges';
 import {
   contrastStage,
   edgesJson,
-  edgesTsv,
   findFinishedRun,
   finishedRuns,
   loadResult,
@@ -104,7 +104,7 @@ describe('the export', () => {
   test('holds every edge with all its digits, and describes every column', async () => {
     const found = await findFinishedRun(db, lab.member, runId);
     const edges = await runEdges(db, lab.member, runId, 'max-statistic');
-    const [head, ...lines] = edgesTsv(edges, found.facts.axes).trimEnd().split('\n');
+    const [head, ...lines] = edgesTsv(edges, found.facts.axes, 'ispc').trimEnd().split('\n');
     const names = head!.split('\t');
     expect(lines.length).toBe(edges.length);
     const first = Object.fromEntries(lines[0]!.split('\t').map((cell, i) => [names[i], cell]));

@@ -1,6 +1,6 @@
 import { afterAll, beforeAll, describe, expect, it } from 'vitest';
 import { engineVersion } from '$engine';
-import { npyParts, type NpyArray } from '$lib/model/npy';
+import { npyParts, type NpyArray } from '$workers/engine/npy';
 import { changeRun, createRun, finishRun, getRun, listRuns, receiveMap } from '$lib/server/runs';
 import { makeColleague, makeMember, openDatabase } from '../contrasts/fixture';
 import { openRunLab, stream, type RunLab } from './laboratory';

@@ -1,6 +1,6 @@
 import { buffer } from 'node:stream/consumers';
 import { afterAll, beforeAll, describe, expect, it } from 'vitest';
-import { parseNpy } from '$lib/model/npy';
+import { parseNpy } from '$workers/engine/npy';
 import { sentMapNames } from '$lib/model/run-maps';
 import { openMap, openSlices, storeResult } from '$lib/server/runs';
 import type { Storage } from '$lib/server/storage';

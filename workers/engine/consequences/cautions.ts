@@ -1,6 +1,7 @@
 import type { Caution, CautionInput, CautionRule } from './caution';
 import * as epochs from './epoch-cautions';
 import * as signal from './signal-cautions';
+import * as network from './network-cautions';
 import * as test from './test-cautions';
 
 export type { Caution, CautionCode } from './caution';
@@ -9,7 +10,10 @@ export type { Caution, CautionCode } from './caution';
 const rules: CautionRule[] = [
   epochs.tooFewEpochs,
   signal.tooMuchMemory,
+  epochs.blocksOfOneLabel,
   test.windowTooLong,
+  network.componentsOfFewPairs,
+  network.componentsMemory,
   test.fewPermutations,
   test.fewArrangements,
   test.fewForMaxima,
@@ -23,12 +27,16 @@ const rules: CautionRule[] = [
   signal.badSites,
   signal.referenceAnalysed,
   signal.referenceOfFew,
+  signal.laplacianOfFew,
   test.shortWindowForShifts,
   signal.wideKernels,
+  signal.phaseMethodCaution,
   signal.lineFrequency,
   signal.sharedSources,
+  test.measureCaution,
   test.coarseP,
   test.clusterClaim,
+  test.claimOfNeighbours,
   test.falseDiscoveryDependence,
 ];
 

@@ -1,4 +1,6 @@
 import type { Epoch } from '../types';
+import { measureOf } from '../measure/registry';
+import { epochBlocks } from '../null/epoch-blocks';
 import { nullModelOf } from '../null/registry';
 import { runsTest } from '../numbers/runs-test';
 import { said, widestKernel, type CautionInput, type CautionRule } from './caution';
@@ -23,15 +25,15 @@ export const tooFewEpochs: CautionRule = ({ plan, facts }) => {
   };
 };
 
-export const fewEpochs: CautionRule = ({ facts: { epochs, chance } }) => {
+export const fewEpochs: CautionRule = ({ plan, facts: { epochs, chance } }) => {
   const condition = epochs.a <= epochs.b ? 'a' : 'b';
   const count = epochs[condition];
   const level = chance[condition];
-  if (count < 2 || count >= wantedEpochs || level === null) return null;
+  if (count < 2 || count >= wantedEpochs) return null;
   return {
     code: 'few-epochs',
     severity: 'attention',
-    message: `${condition.toUpperCase()} has ${said(count)} epochs only: chance alone makes ISPC near ${level.toFixed(2)}, so only large differences can be seen.`,
+    message: `${condition.toUpperCase()} has ${said(count)} epochs only: ${level === null || level === 0 ? 'chance alone moves the measure far' : `chance alone makes ${measureOf(plan.measure).shortName} near ${level.toFixed(2)}`}, so only large differences can be seen.`,
   };
 };
 
@@ -51,13 +53,14 @@ export const epochsLost: CautionRule = ({ plan, facts }) => {
   };
 };
 
-export const unequalEpochs: CautionRule = ({ facts: { epochs, chance } }) => {
+export const unequalEpochs: CautionRule = ({ plan, facts: { epochs, chance } }) => {
   const { a, b } = epochs;
   if (a < 2 || b < 2 || Math.max(a, b) / Math.min(a, b) < unequalRatio) return null;
+  if (chance.a === null || chance.b === null || chance.a === chance.b) return null;
   return {
     code: 'unequal-epochs',
     severity: 'attention',
-    message: `A has ${said(a)} epochs and B ${said(b)}: chance alone makes ISPC near ${chance.a!.toFixed(3)} in A and ${chance.b!.toFixed(3)} in B. The null keeps the counts, so p holds; the raw difference leans to the smaller condition.`,
+    message: `A has ${said(a)} epochs and B ${said(b)}: chance alone makes ${measureOf(plan.measure).shortName} near ${chance.a.toFixed(3)} in A and ${chance.b.toFixed(3)} in B. The null keeps the counts, so p holds; the raw difference leans to the smaller condition.`,
   };
 };
 
@@ -88,11 +91,13 @@ export const conditionsInBlocks: CautionRule = (input) => {
   };
 };
 
-/** Labels in time order within each recording: true for A. */
-function sequencesByTime({ epochs }: CautionInput): boolean[][] {
+/** Labels in time order within each recording, or block of the null: true for A. */
+function sequencesByTime({ plan, epochs }: CautionInput): boolean[][] {
+  const blocks = epochBlocks(plan, epochs);
   const byRecording = new Map<string, Epoch[]>();
-  for (const epoch of epochs) {
-    byRecording.set(epoch.recording, [...(byRecording.get(epoch.recording) ?? []), epoch]);
+  for (const [n, epoch] of epochs.entries()) {
+    const key = blocks ? String(blocks[n]) : epoch.recording;
+    byRecording.set(key, [...(byRecording.get(key) ?? []), epoch]);
   }
   return [...byRecording.values()].map((list) =>
     list.sort((x, y) => x.onsetS - y.onsetS).map((epoch) => epoch.condition === 'a'),
@@ -116,6 +121,25 @@ function orderInWords(sequences: boolean[][]): string {
   if (share <= 0.25) return 'B comes mostly before A';
   return 'A and B come in blocks';
 }
+
+export const blocksOfOneLabel: CautionRule = ({ plan, epochs }) => {
+  const blocks = epochBlocks(plan, epochs);
+  if (!blocks || epochs.length === 0) return null;
+  const labels = new Map<number, Set<string>>();
+  for (const [n, { condition }] of epochs.entries()) {
+    labels.set(blocks[n], (labels.get(blocks[n]) ?? new Set()).add(condition));
+  }
+  const single = [...labels.values()].filter((found) => found.size === 1).length;
+  if (single === 0) return null;
+  const none = single === labels.size;
+  return {
+    code: 'blocks-of-one-label',
+    severity: none ? 'stop' : 'attention',
+    message: none
+      ? `No block holds epochs of both A and B, so no label can change its place: take larger blocks, or free labels.`
+      : `${said(single)} of ${said(labels.size)} blocks hold epochs of one condition only: their labels cannot change places, and they say nothing.`,
+  };
+};
 
 export const epochsOverlap: CautionRule = ({ epochs, window, axes, facts, plan }) => {
   const byTime = [...epochs].sort(

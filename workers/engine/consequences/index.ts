@@ -1,7 +1,9 @@
 import type { Plan } from '../plan';
 import type { Epoch, LostEpoch, RecordingFacts } from '../types';
-import { chanceIspc, criticalIspc, differenceSd } from '../numbers/chance';
+import { measureOf, type MeasureId } from '../measure/registry';
+import type { ChanceLevels } from '../numbers/chance';
 import { drawShape } from '../null/draws';
+import { epochBlocks } from '../null/epoch-blocks';
 import { nullModelOf } from '../null/registry';
 import { phaseLayout } from '../phase/layout';
 import type { KernelWidth } from '../phase/method';
@@ -22,6 +24,8 @@ export const statedZ = 3.5;
 
 /** What a plan can show and what speaks against it, before any statistic is computed. */
 export interface Consequences {
+  /** Whose chance levels and differences these are. */
+  measure: MeasureId;
   pairs: number;
   frequencies: number;
   times: number;
@@ -36,12 +40,14 @@ export interface Consequences {
   smallestUncorrectedP: number;
   /** Different arrangements the null can draw; null when beyond counting (above 10^15). */
   arrangements: number | null;
-  /** ISPC expected by chance alone at these counts; null without epochs. */
+  /** The measure expected by chance alone at these counts; null without epochs or a formula. */
   chance: { a: number | null; b: number | null };
-  /** ISPC that chance passes at alpha in one test. */
+  /** Value of the measure that chance passes at alpha in one test. */
   critical: { a: number | null; b: number | null };
-  /** Difference of ISPC that stands at z = `statedZ` where there is no synchrony in either. */
+  /** Difference of the measure that stands at z = `statedZ` where there is no synchrony in either. */
   smallestDifference: { z: number; difference: number | null };
+  /** The settings that the kernels are of, to draw them. */
+  phase: Plan['phase'];
   kernels: KernelWidth[];
   guardS: number;
   /** Memory for the phases of all epochs, shared by the workers, bytes. */
@@ -71,10 +77,15 @@ export function consequencesOf(
     axes.samplingRateHz,
   );
   const model = nullModelOf(plan.null);
-  const shape = drawShape(plan, axes, { epochsA: counts.a, epochsB: counts.b });
+  const shape = drawShape(plan, axes, {
+    epochsA: counts.a,
+    epochsB: counts.b,
+    blocks: epochBlocks(plan, epochs),
+  });
   const arrangements = model.logArrangements(shape);
   const tests = axes.pairs.length * axes.frequenciesHz.length * axes.timesS.length;
   const facts = {
+    measure: plan.measure,
     pairs: axes.pairs.length,
     frequencies: axes.frequenciesHz.length,
     times: axes.timesS.length,
@@ -89,18 +100,8 @@ export function consequencesOf(
     ),
     smallestUncorrectedP: smallestP(plan.test, arrangements),
     arrangements: arrangements > Math.log(1e15) ? null : Math.round(Math.exp(arrangements)),
-    chance: { a: orNull(counts.a, chanceIspc), b: orNull(counts.b, chanceIspc) },
-    critical: {
-      a: orNull(counts.a, (n) => criticalIspc(n, plan.test.alpha)),
-      b: orNull(counts.b, (n) => criticalIspc(n, plan.test.alpha)),
-    },
-    smallestDifference: {
-      z: statedZ,
-      difference:
-        counts.a > 0 && counts.b > 0
-          ? Math.min(1, statedZ * differenceSd(counts.a, counts.b))
-          : null,
-    },
+    ...chanceFacts(plan, counts),
+    phase: plan.phase,
     kernels,
     guardS: Math.max(...kernels.map((kernel) => kernel.halfLength)) / axes.samplingRateHz,
     phaseBytes: phaseLayout(axes, epochs.length, window, keepsWholeWindow(plan)).byteLength,
@@ -114,6 +115,22 @@ function countsOf(epochs: Epoch[]): EpochCounts {
   return { a, b: epochs.length - a };
 }
 
-function orNull(epochs: number, value: (epochs: number) => number): number | null {
-  return epochs > 0 ? value(epochs) : null;
+function chanceFacts(
+  plan: Plan,
+  { a, b }: EpochCounts,
+): Pick<Consequences, 'chance' | 'critical' | 'smallestDifference'> {
+  const { chance } = measureOf(plan.measure);
+  const of = (value: (levels: ChanceLevels, epochs: number) => number) => ({
+    a: chance && a > 0 ? value(chance, a) : null,
+    b: chance && b > 0 ? value(chance, b) : null,
+  });
+  return {
+    chance: of((levels, epochs) => levels.level(epochs)),
+    critical: of((levels, epochs) => levels.critical(epochs, plan.test.alpha)),
+    smallestDifference: {
+      z: statedZ,
+      difference:
+        chance && a > 0 && b > 0 ? Math.min(1, statedZ * chance.differenceSd(a, b)) : null,
+    },
+  };
 }

@@ -1,3 +1,4 @@
+import { correctionOf } from '../correct/registry';
 import type { Plan } from '../plan';
 
 export interface EpochCounts {
@@ -16,7 +17,7 @@ export function smallestP(test: Plan['test'], logArrangementCount: number): numb
 
 /**
  * The smallest corrected p: maxima over the map are compared in the plan's tail already, so they
- * count once; Benjamini-Hochberg starts from the uncorrected p, when all tests reach it together.
+ * count once; false discovery rates start from the uncorrected p, when all tests reach it together.
  * Where every arrangement has a twin of opposite sign (labels of two conditions of equal size), a
  * two-sided maximum is always met twice among all of them.
  */
@@ -26,12 +27,22 @@ export function smallestAdjustedP(
   logArrangementCount: number,
   hasTwins: boolean,
 ): number {
-  if (correction === 'benjamini-hochberg') return smallestP(test, logArrangementCount);
+  if (correctionOf(correction).family === 'false discovery') {
+    return smallestP(test, logArrangementCount);
+  }
   const share = Math.exp(-logArrangementCount) * (hasTwins && test.tail === 'two-sided' ? 2 : 1);
   return Math.min(1, Math.max(1 / (test.permutations + 1), share));
 }
 
-/** How many tests must reach the smallest p together before Benjamini-Hochberg can claim one. */
-export function togetherForFalseDiscovery(test: Plan['test'], tests: number, p: number): number {
-  return Math.max(1, Math.ceil((p * tests) / test.alpha - 1e-9));
+/**
+ * How many tests must reach the smallest p together before a false discovery rate can claim one;
+ * more than there are where none can. `inflation` is 1 for Benjamini-Hochberg.
+ */
+export function togetherForFalseDiscovery(
+  test: Plan['test'],
+  tests: number,
+  p: number,
+  inflation = 1,
+): number {
+  return Math.max(1, Math.ceil((inflation * p * tests) / test.alpha - 1e-9));
 }

@@ -1,3 +1,4 @@
+import { phaseMethod } from '../phase/registry';
 import { listed } from '../prepare/recordings';
 import { said, widestKernel, type CautionRule } from './caution';
 
@@ -5,6 +6,8 @@ import { said, widestKernel, type CautionRule } from './caution';
 const mostSharedBytes = 2 ** 31;
 /** Sites from which their mean comes near a neutral reference. Common practice, no source. */
 const wantedForAverage = 20;
+/** Sites from which a surface Laplacian resolves neighbours. Common practice, no source. */
+const wantedForLaplacian = 32;
 const mainsHz = [50, 60];
 
 export const tooMuchMemory: CautionRule = ({ facts }) => {
@@ -60,6 +63,16 @@ export const referenceOfFew: CautionRule = ({ plan }) => {
   };
 };
 
+export const laplacianOfFew: CautionRule = ({ plan }) => {
+  const count = plan.sites.length;
+  if (plan.epoch.reference.kind !== 'laplacian' || count >= wantedForLaplacian) return null;
+  return {
+    code: 'laplacian-of-few',
+    severity: 'attention',
+    message: `A surface Laplacian of ${said(count)} sites is coarse: it cannot tell neighbours apart, sites at the rim are guessed from one side, and all sites share their interpolation. From ${wantedForLaplacian} well-spread sites on it is dense enough.`,
+  };
+};
+
 export const wideKernels: CautionRule = ({ plan, facts }) => {
   const widest = widestKernel(facts.kernels);
   const { fromS, toS } = plan.epoch;
@@ -68,7 +81,7 @@ export const wideKernels: CautionRule = ({ plan, facts }) => {
     return {
       code: 'wide-kernels',
       severity: 'attention',
-      message: `${kernel}, wider than the window of ${said(toS - fromS)} s: its phases come mostly from outside. Take fewer cycles, a higher frequency or a longer window.`,
+      message: `${kernel}, wider than the window of ${said(toS - fromS)} s: its phases come mostly from outside. Take ${phaseMethod(plan.phase.method).sharper}, a higher frequency or a longer window.`,
     };
   }
   const several = plan.times.toS - plan.times.fromS >= plan.times.stepS;
@@ -78,6 +91,11 @@ export const wideKernels: CautionRule = ({ plan, facts }) => {
     severity: 'note',
     message: `${kernel}: times closer than that are not separate findings.`,
   };
+};
+
+export const phaseMethodCaution: CautionRule = ({ plan, axes }) => {
+  const message = phaseMethod(plan.phase.method).caution(plan.phase, axes.frequenciesHz);
+  return message === null ? null : { code: 'phase-method', severity: 'attention', message };
 };
 
 export const lineFrequency: CautionRule = ({ facts }) => {

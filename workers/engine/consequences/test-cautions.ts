@@ -1,5 +1,7 @@
+import type { Correction } from '../correct/correction';
 import { correctionOf } from '../correct/registry';
 import { nullCaution } from '../null/caution';
+import { measureOf } from '../measure/registry';
 import { nullModelOf } from '../null/registry';
 import { said, widestKernel, type CautionRule } from './caution';
 import { togetherForFalseDiscovery } from './reach';
@@ -18,13 +20,27 @@ export const fewPermutations: CautionRule = ({ plan, facts }) => {
       message: `The smallest p this test can give is ${said(facts.smallestP)}, above alpha ${said(alpha)}: nothing can be claimed. Ask for more permutations${facts.arrangements !== null && facts.arrangements < permutations ? ' and more epochs' : ''}.`,
     };
   }
-  if (!corrections.includes('benjamini-hochberg')) return null;
-  const together = togetherForFalseDiscovery(plan.test, facts.tests, facts.smallestUncorrectedP);
+  const rate = corrections.map(correctionOf).find((each: Correction) => each.inflation);
+  if (!rate) return null;
+  const inflation = (rate as Correction).inflation?.(facts.tests);
+  const together = togetherForFalseDiscovery(
+    plan.test,
+    facts.tests,
+    facts.smallestUncorrectedP,
+    inflation,
+  );
   if (together === 1) return null;
+  if (together > facts.tests) {
+    return {
+      code: 'few-permutations',
+      severity: 'attention',
+      message: `With ${said(permutations)} permutations, ${rate.name} cannot claim any of the ${said(facts.tests)} tests, even if all reach the smallest p: ask for more permutations.`,
+    };
+  }
   return {
     code: 'few-permutations',
     severity: 'attention',
-    message: `With ${said(permutations)} permutations, Benjamini–Hochberg can claim something only when ${said(together)} of the ${said(facts.tests)} tests reach the smallest p, ${said(facts.smallestUncorrectedP)}, together.`,
+    message: `With ${said(permutations)} permutations, ${rate.name} can claim something only when ${said(together)} of the ${said(facts.tests)} tests reach the smallest p, ${said(facts.smallestUncorrectedP)}, together.`,
   };
 };
 
@@ -98,8 +114,15 @@ export const windowTooLong: CautionRule = ({ plan, window }) => {
   };
 };
 
+export const measureCaution: CautionRule = ({ plan }) => {
+  const { caution, shortName } = measureOf(plan.measure);
+  return caution === null
+    ? null
+    : { code: 'measure', severity: 'note', message: `${shortName}: ${caution}` };
+};
+
 export const clusterClaim: CautionRule = ({ plan }) =>
-  plan.test.corrections.includes('cluster-mass')
+  plan.test.corrections.some((id) => id === 'cluster-mass' || id === 'cluster-size')
     ? {
         code: 'cluster-claim',
         severity: 'note',
@@ -107,6 +130,14 @@ export const clusterClaim: CautionRule = ({ plan }) =>
           'A significant cluster is a claim about the cluster as a whole, not about each of its points, its onset or its extent.',
       }
     : null;
+
+export const claimOfNeighbours: CautionRule = ({ plan }) => {
+  const messages = plan.test.corrections
+    .filter((id) => id === 'threshold-free-enhancement' || id === 'network-components')
+    .map((id) => `${correctionOf(id).name}: ${correctionOf(id).caution}`);
+  if (messages.length === 0) return null;
+  return { code: 'claim-of-neighbours', severity: 'note', message: messages.join(' ') };
+};
 
 export const falseDiscoveryDependence: CautionRule = ({ plan }) =>
   plan.test.corrections.includes('benjamini-hochberg')

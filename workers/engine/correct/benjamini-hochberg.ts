@@ -1,71 +1,5 @@
-import type { CorrectionOutcome } from '../types';
-import { ties } from '../ties';
-import type { Correction, Evidence } from './correction';
-import { median } from './distribution';
-import { regionEdges } from './edges';
-import { passes, tailP } from './p-value';
-import { tailStatistic } from './tail';
-
-/**
- * Step-up adjusted p: the smallest false discovery rate at which each p is still rejected.
- * @returns adjusted p in the order given, at most 1; does not change `p`
- * Source: Benjamini and Hochberg 1995.
- * @example adjustFalseDiscovery(Float64Array.of(0.01, 0.04)) // [0.02, 0.04]
- */
-export function adjustFalseDiscovery(p: Float64Array): Float64Array {
-  const sorted = Float64Array.from(p).sort();
-  const adjusted = new Float64Array(sorted.length);
-  let least = 1;
-  for (let rank = sorted.length; rank >= 1; rank--) {
-    least = Math.min(least, (sorted[rank - 1] * sorted.length) / rank);
-    adjusted[rank - 1] = least;
-  }
-  // Equal p have one adjusted value, that of the highest rank among them.
-  return p.map((value) => adjusted[firstAtLeast(sorted, value)]);
-}
-
-function firstAtLeast(sorted: Float64Array, value: number): number {
-  let low = 0;
-  let high = sorted.length - 1;
-  while (low < high) {
-    const middle = (low + high) >> 1;
-    if (sorted[middle] >= value) high = middle;
-    else low = middle + 1;
-  }
-  return low;
-}
-
-/**
- * Smallest statistic among the claimed points. Without any: a value above every surrogate of every
- * feature, which gives a lone point the smallest p there is; null where even that is not enough.
- */
-function criticalValue(evidence: Evidence, claimed: Uint8Array): number | null {
-  const { maps, tail, alpha, permutations } = evidence;
-  let least = Infinity;
-  for (let x = 0; x < claimed.length; x++) {
-    if (claimed[x] === 1) least = Math.min(least, tailStatistic(maps.z[x], tail));
-  }
-  if (least !== Infinity) return least;
-  if (!passes(tailP(0, permutations, tail) * claimed.length, alpha)) return null;
-  return maps.maxStatistic.reduce((most, value) => Math.max(most, value), 0) + ties.z;
-}
-
-function judge(evidence: Evidence): CorrectionOutcome {
-  const { maps, alpha } = evidence;
-  const adjusted = adjustFalseDiscovery(evidence.p);
-  const claimed = Uint8Array.from(adjusted, (p) => (passes(p, alpha) ? 1 : 0));
-  const critical = criticalValue(evidence, claimed);
-  return {
-    id: benjaminiHochberg.id,
-    adjustedP: Float32Array.from(adjusted),
-    edges: regionEdges(evidence, benjaminiHochberg.id, claimed, (peak) => ({
-      adjustedP: adjusted[peak],
-      adjustedPInterval: null,
-    })),
-    criticalValue: critical,
-    smallestDifference: critical === null ? null : critical * median(maps.nullSd),
-  };
-}
+import type { Correction } from './correction';
+import { judgeFalseDiscovery } from './false-discovery';
 
 export const benjaminiHochberg: Correction<'benjamini-hochberg'> = {
   id: 'benjamini-hochberg',
@@ -74,6 +8,9 @@ export const benjaminiHochberg: Correction<'benjamini-hochberg'> = {
   sentence:
     'Of the points claimed, the expected share of false ones stays at alpha; single claims may be false.',
   caution: 'Some of the claimed points are expected to be false, up to the share alpha.',
+  statistic: null,
+  part: null,
+  inflation: () => 1,
   source: 'Benjamini and Hochberg 1995',
-  judge,
+  judge: (evidence) => judgeFalseDiscovery(evidence, benjaminiHochberg.id, 1),
 };

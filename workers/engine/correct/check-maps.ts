@@ -2,6 +2,7 @@ import { measureOf } from '../measure/registry';
 import type { Plan } from '../plan';
 import type { Axes } from '../types';
 import type { ClaimMaps } from './correction';
+import { planParts } from './plan-parts';
 
 /**
  * Checks that maps have the plan's shape and that every number can be what it says: a server calls
@@ -24,6 +25,11 @@ export function checkMaps(plan: Plan, axes: Axes, maps: ClaimMaps): void {
   check('lower', maps.lower, cells, within(0, permutations));
   check('maxStatistic', maps.maxStatistic, permutations, finite);
   check('maxClusterMass', maps.maxClusterMass, permutations, (v) => finite(v) && v >= 0);
+  for (const [id, part] of planParts(plan.test)) {
+    const values = maps.parts[id];
+    const fault = values ? part.fault(values, { axes, test: plan.test }) : 'is missing';
+    if (fault) throw new RangeError(`what ${id} needs: ${fault}`);
+  }
   for (let x = 0; x < cells; x++) {
     // Each surrogate is above, below or equal: the two counts cover all of them.
     if (maps.upper[x] + maps.lower[x] < permutations) {

@@ -40,6 +40,8 @@ export const clusterMass: Correction<'cluster-mass'> = {
     'Neighbouring points above the forming threshold are joined within a pair, and the sum of their |z| is held against the largest such sum anywhere in each permutation.',
   caution:
     'The claim is about the cluster as a whole, not about each of its points, its onset or its extent.',
+  statistic: 'cluster mass',
+  part: null,
   source: 'Maris and Oostenveld 2007',
   judge,
 };

@@ -17,8 +17,13 @@ export type Claims = Omit<Outcome, 'digest'>;
  * @throws RangeError naming the map whose shape or range does not fit the plan
  */
 export function concludeFrom(plan: Plan, axes: Axes, maps: ClaimMaps): Claims {
-  const { tail, alpha, permutations, clusterFormingZ } = plan.test;
   checkMaps(plan, axes, maps);
+  return judged(axes, plan.test, maps);
+}
+
+/** What each correction of a test says of maps that are known to fit. */
+export function judged(axes: Axes, test: Plan['test'], maps: ClaimMaps): Claims {
+  const { tail, alpha, permutations, clusterFormingZ } = test;
   const p = new Float64Array(maps.z.length);
   for (let x = 0; x < p.length; x++) {
     p[x] = tailP(tailExceedances(maps.upper[x], maps.lower[x], tail), permutations, tail);
@@ -29,12 +34,13 @@ export function concludeFrom(plan: Plan, axes: Axes, maps: ClaimMaps): Claims {
     maps,
     tail,
     alpha,
+    clusterFormingZ,
     permutations,
     p,
     clusters,
   };
   return {
-    corrections: plan.test.corrections.map((id) => correctionOf(id).judge(evidence)),
+    corrections: test.corrections.map((id) => correctionOf(id).judge(evidence)),
     clusters,
     p: Float32Array.from(p),
     degenerateFeatures: maps.nullSd.reduce((count, sd) => count + (sd === 0 ? 1 : 0), 0),
@@ -49,5 +55,5 @@ export async function conclude(
   maps: ClaimMaps,
 ): Promise<Outcome> {
   const claims = concludeFrom(plan, axes, maps);
-  return { ...claims, digest: await runDigest(plan, counts, maps, claims.clusters) };
+  return { ...claims, digest: await runDigest(plan, counts, maps, claims) };
 }

@@ -1,5 +1,6 @@
 import type { Tail } from '../plan';
 import type { Axes, Cluster, CorrectionOutcome, RunMaps } from '../types';
+import type { NullPart } from './part';
 
 /** The maps and distributions that a claim rests on: what the server needs to draw it again. */
 export type ClaimMaps = Pick<
@@ -14,6 +15,7 @@ export type ClaimMaps = Pick<
   | 'lower'
   | 'maxStatistic'
   | 'maxClusterMass'
+  | 'parts'
 >;
 
 /** What a correction judges. */
@@ -22,6 +24,7 @@ export interface Evidence {
   maps: ClaimMaps;
   tail: Tail;
   alpha: number;
+  clusterFormingZ: number;
   permutations: number;
   /** p of each feature by tail, f64. */
   p: Float64Array;
@@ -38,10 +41,16 @@ export interface Correction<Id extends string = string> {
   name: string;
   /** What is kept at alpha. */
   family: 'family-wise' | 'false discovery';
+  /** Of false discovery: what p is multiplied by, for a number of tests. */
+  inflation?: (tests: number) => number;
   /** One sentence for hover and focus. */
   sentence: string;
   /** What a claim under it does not say, for screens and exports; null where nothing is to add. */
   caution: string | null;
   source: string;
+  /** What each permutation's maximum is a maximum of; null where none stands behind the claim. */
+  statistic: string | null;
+  /** What it needs of every permutation beyond what each run keeps; null where that is enough. */
+  part: NullPart | null;
   judge(evidence: Evidence): CorrectionOutcome;
 }

@@ -42,6 +42,8 @@ export const maxStatistic: Correction<'max-statistic'> = {
   sentence:
     'Each point is held against the largest value anywhere in each permutation, so the chance of even one false claim stays at alpha.',
   caution: null,
+  statistic: '|z|',
+  part: null,
   source: 'Westfall and Young 1993 (single step); p with + 1, Phipson and Smyth 2010',
   judge,
 };

@@ -1,9 +1,23 @@
 import { benjaminiHochberg } from './benjamini-hochberg';
+import { benjaminiYekutieli } from './benjamini-yekutieli';
 import { clusterMass } from './cluster-mass';
+import { clusterSize } from './cluster-size';
 import { maxStatistic } from './max-statistic';
+import { networkComponents } from './network-components';
+import { stepDownMaximum } from './step-down-maximum';
+import { thresholdFreeEnhancement } from './threshold-free-enhancement';
 
 /** In the order the form shows them. */
-export const corrections = [maxStatistic, clusterMass, benjaminiHochberg] as const;
+export const corrections = [
+  maxStatistic,
+  stepDownMaximum,
+  clusterMass,
+  clusterSize,
+  thresholdFreeEnhancement,
+  networkComponents,
+  benjaminiHochberg,
+  benjaminiYekutieli,
+] as const;
 
 export type CorrectionId = (typeof corrections)[number]['id'];
 

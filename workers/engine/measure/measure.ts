@@ -1,3 +1,6 @@
+import type { SettingField } from '../settings';
+import type { ChanceLevels } from '../numbers/chance';
+
 /** Which stretches of phasors are summed, epoch by epoch. */
 export interface EpochRows {
   /** Epochs to sum: the first `epochCount` entries of both lists of starts. */
@@ -30,14 +33,29 @@ export interface ShiftedWindow {
 export interface Measure<Id extends string = string> {
   id: Id;
   name: string;
+  /** For column heads and readings: "ISPC" in "ISPC A". */
+  shortName: string;
   /** One sentence for hover and focus. */
   sentence: string;
   formula: string;
   source: string;
+  /** What a value of it does not say; null where nothing is to add. */
+  caution: string | null;
+  /** Whether phasors keep their amplitude (z in uV) or are of length 1 (u). */
+  needsAmplitude: boolean;
+  /** What the plan must say besides its id; absent where nothing. */
+  settings?: readonly SettingField[];
+  /** What it does where there is no synchrony; null where no formula holds. */
+  chance: ChanceLevels | null;
   /** Smallest and largest possible value. */
   range: [number, number];
   /** 1 to 8. */
   termCount: number;
+  /**
+   * Set where the measure is the resultant length |sum u_j u_k*| / N: the kernels made for that may
+   * then stand in for the three functions below. Others leave it out and lose nothing but speed.
+   */
+  isResultantLength?: true;
   /**
    * Overwrites `sums[feature * termCount + term]` with the sums over epochs. `jStarts[n]` and
    * `kStarts[n]`, where the stretches' real parts begin, need not be of the same epoch: that is

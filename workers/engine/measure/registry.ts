@@ -1,7 +1,19 @@
+import { debiasedWeightedPhaseLagIndex } from './debiased-weighted-phase-lag-index';
 import { ispc } from './ispc';
+import { laggedPart } from './lagged-part';
+import { pairwisePhaseConsistency } from './pairwise-phase-consistency';
+import { phaseLagIndex } from './phase-lag-index';
+import { weightedPhaseLagIndex } from './weighted-phase-lag-index';
 
 /** In the order the form shows them. */
-export const measures = [ispc] as const;
+export const measures = [
+  ispc,
+  pairwisePhaseConsistency,
+  laggedPart,
+  phaseLagIndex,
+  weightedPhaseLagIndex,
+  debiasedWeightedPhaseLagIndex,
+] as const;
 
 export type MeasureId = (typeof measures)[number]['id'];
 

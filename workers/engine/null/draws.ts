@@ -12,6 +12,7 @@ export function drawShape(plan: Plan, axes: Axes, counts: RunCounts): DrawShape 
     siteCount: axes.sites.length,
     epochsA: counts.epochsA,
     epochsB: counts.epochsB,
+    blocks: counts.blocks,
     windowSamples: windowSamples(plan, axes.samplingRateHz).count,
   };
 }

@@ -1,5 +1,6 @@
 import { labelBlockBits, labelBlockCount } from '../../kernels/label-sums';
 import { logChoose } from '../numbers/counting';
+import { labelGroups } from './label-groups';
 import { LabelSampler } from './label-sampler';
 import type { DrawShape, NullModel, PermutationRange } from './model';
 import { permutationGenerator } from './random';
@@ -52,4 +53,5 @@ export const labels: NullModel<'labels'> = {
   drawsByteLength: (shape) => shape.permutations * labelBlockCount(shape.epochsA + shape.epochsB),
   draw,
   sampler: (run) => new LabelSampler(run),
+  groups: labelGroups,
 };

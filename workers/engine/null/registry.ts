@@ -1,9 +1,10 @@
 import { labels } from './labels';
+import { labelsWithinBlocks } from './labels-within-blocks';
 import { timeShift } from './time-shift';
 import { trialOrder } from './trial-order';
 
 /** In the order the form shows them. */
-export const nullModels = [labels, trialOrder, timeShift] as const;
+export const nullModels = [labels, labelsWithinBlocks, trialOrder, timeShift] as const;
 
 export type NullId = (typeof nullModels)[number]['id'];
 

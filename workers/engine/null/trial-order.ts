@@ -1,4 +1,5 @@
 import { logFactorial } from '../numbers/counting';
+import { orderGroups } from './order-groups';
 import type { DrawShape, NullModel, PairSampler, PermutationRange, RunInput } from './model';
 import { permutationGenerator, shuffle } from './random';
 
@@ -92,4 +93,5 @@ export const trialOrder: NullModel<'trial-order'> = {
     shape.permutations * shape.siteCount * (shape.epochsA + shape.epochsB) * 2,
   draw,
   sampler,
+  groups: orderGroups,
 };

@@ -63,7 +63,7 @@ export function convolver(kernels: PhaseKernel[], geometry: EpochGeometry): Phas
 }
 
 /** Smallest power of two that is at least `length` (and at least 4, the least fft.js can do). */
-function powerOfTwo(length: number): number {
+export function powerOfTwo(length: number): number {
   let size = 4;
   while (size < length) size *= 2;
   return size;

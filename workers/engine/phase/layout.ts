@@ -1,7 +1,8 @@
 import type { Axes } from '../types';
 
 /**
- * Where the unit phasors of a run lie: Float32,
+ * Where the phasors of a run lie (unit vectors u, or z in uV for measures that weight by amplitude):
+ * Float32,
  * `phasors[((site * epochCount + epoch) * 2 + part) * samplesPerEpoch + f * samplesPerFrequency + s]`,
  * part 0 real and 1 imaginary; epochs of A before those of B. Nulls that shift in time keep every
  * sample of the window; the others keep only the plan's times, so memory does not pay for the rest.

@@ -1,11 +1,11 @@
-import type { Plan } from '../plan';
-
-export type PhaseSettings = Plan['phase'];
+import type { z } from 'zod';
+import type { PhaseSettings } from './registry';
 
 /** How wide a kernel is: what the form shows beside each frequency. */
 export interface KernelWidth {
   frequencyHz: number;
-  cycles: number;
+  /** What makes the kernel this wide, in words: "5 cycles". */
+  words: string;
   /** Full width at half maximum of the envelope, seconds. */
   timeFwhmS: number;
   /** Full width at half maximum of the amplitude spectrum, hertz. */
@@ -47,21 +47,67 @@ export interface PhaseAnalyser {
     outRe: Float64Array,
     outIm: Float64Array,
   ): void;
-  /** Sum of the kernel's absolute values, by frequency: the scale of |z| for a signal of size 1. */
+  /** By frequency, the scale of |z| for a signal of size 1: sum of |w|, or a filter's gain. */
   kernelSums: Float64Array;
 }
 
-/** A way to get phases. Adding one is one file and one line in phase/registry.ts. */
-export interface PhaseMethod {
-  id: PhaseSettings['method'];
+/** The real part of a kernel over time in seconds: 1 at 0, and 0 outside. */
+export type KernelShape = (timeS: number) => number;
+
+/** One setting of a method as the form asks for it; what is typed is checked by the schema. */
+export type PhaseField = {
+  /** Where it stands below `phase` in the plan: "cycles.from". */
+  path: string;
+  /** Its name in lists of issues and changes. */
+  name: string;
+  /** Its name above the control. */
+  label: string;
+  /** One sentence for hover and focus; null where the label says it. */
+  hint: string | null;
+  /** What a new plan starts with, as text. */
+  initial: string;
+} & (
+  | { kind: 'number'; unit: string | null }
+  | { kind: 'choice'; options: readonly { value: string; label: string }[] }
+);
+
+/**
+ * A way to get phases. Adding one is one file and one line in phase/registry.ts: plan schema, form,
+ * cautions and list of changes read what stands here.
+ */
+export interface PhaseMethod<
+  Settings extends { method: string } = PhaseSettings,
+  Schema extends z.ZodType = z.ZodType,
+> {
+  id: Settings['method'];
   name: string;
   /** One sentence for hover and focus. */
   sentence: string;
   formula: string;
   source: string;
+  /** Of the plan's `phase`: `method`, `frequencies`, and the method's own settings. */
+  schema: Schema;
+  /** The own settings, in the order of the form. */
+  fields: readonly PhaseField[];
+  /** What makes its kernels narrower in time, for cautions: "fewer cycles". */
+  sharper: string;
+  /** What makes its guard shorter, for remedies: "take fewer cycles". */
+  shorter: string;
+  /**
+   * Refuses settings that make no sense at these frequencies or this sampling rate.
+   * @throws PlanError naming field, value and remedy.
+   */
+  refuse(settings: Settings, frequenciesHz: number[], rateHz: number): void;
+  /** What can mislead with these settings; null when nothing does. */
+  caution(settings: Settings, frequenciesHz: number[]): string | null;
   /** Kernel widths by frequency; allocates no kernel, so any typed-in number may be asked. */
-  widths(settings: PhaseSettings, frequenciesHz: number[], rateHz: number): KernelWidth[];
-  /** The kernel of each frequency. */
-  kernels(settings: PhaseSettings, frequenciesHz: number[], rateHz: number): PhaseKernel[];
-  analyser(kernels: PhaseKernel[], geometry: EpochGeometry): PhaseAnalyser;
+  widths(settings: Settings, frequenciesHz: number[], rateHz: number): KernelWidth[];
+  /** By frequency, the kernel to draw. */
+  shapes(settings: Settings, frequenciesHz: number[]): KernelShape[];
+  analyser(
+    settings: Settings,
+    frequenciesHz: number[],
+    rateHz: number,
+    geometry: EpochGeometry,
+  ): PhaseAnalyser;
 }

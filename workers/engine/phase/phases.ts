@@ -1,3 +1,4 @@
+import { measureOf } from '../measure/registry';
 import type { Plan } from '../plan';
 import { windowSamples } from '../prepare/grid';
 import { flatError } from '../prepare/signal';
@@ -11,12 +12,18 @@ import { keepsWholeWindow } from './window';
 /** |z| below this share of what the kernel can give is rounding, not a signal. */
 const noSignal = 1e-13;
 
+/** Amplitudes in uV that f32 holds with all its digits. */
+const leastAmplitude = 1e-37;
+const mostAmplitude = 1e37;
+
 /** All that is made once for the phases of many epochs of one plan. */
 export interface PhaseJob {
   layout: PhaseLayout;
   sites: string[];
   frequenciesHz: number[];
   analyser: PhaseAnalyser;
+  /** Whether z is kept with its amplitude, in uV, or made a unit vector. */
+  keepsAmplitude: boolean;
   /** Scratch: two signals scaled to 1, and their complex values. */
   first: Float64Array;
   second: Float64Array;
@@ -39,14 +46,18 @@ export function phaseJob(plan: Plan, axes: Axes, epochCount: number): PhaseJob {
     ? Int32Array.from({ length: window.count }, (_, i) => i)
     : window.kept;
   const method = phaseMethod(plan.phase.method);
-  const kernels = method.kernels(plan.phase, frequenciesHz, rate);
   const values = 2 * layout.samplesPerEpoch;
   const length = window.count + 2 * guard;
   return {
     layout,
     sites: axes.sites,
     frequenciesHz,
-    analyser: method.analyser(kernels, { guard, windowCount: window.count, offsets }),
+    analyser: method.analyser(plan.phase, frequenciesHz, rate, {
+      guard,
+      windowCount: window.count,
+      offsets,
+    }),
+    keepsAmplitude: measureOf(plan.measure).needsAmplitude,
     first: new Float64Array(length),
     second: new Float64Array(length),
     re: new Float64Array(values),
@@ -55,8 +66,9 @@ export function phaseJob(plan: Plan, axes: Axes, epochCount: number): PhaseJob {
 }
 
 /**
- * Writes the unit phasors of one epoch, all sites, into `phasors` by the layout of
- * phase/layout.ts. `samples` is [site][guard + window + guard]. Computed in f64, stored in f32.
+ * Writes the phasors of one epoch, all sites, into `phasors` by the layout of phase/layout.ts: of
+ * length 1, or for measures that weight by amplitude z over its kernel's sum, in uV. `samples` is
+ * [site][guard + window + guard]. Computed in f64, stored in f32.
  * @throws RangeError naming site, epoch and recording (`where`) when a signal is flat, not finite,
  * or has nothing at a frequency: a phase is never a NaN.
  */
@@ -70,16 +82,20 @@ export function phasesOfEpoch(
   const { sites, analyser, first, second, re, im } = job;
   for (let site = 0; site < sites.length; site += 2) {
     const partner = Math.min(site + 1, sites.length - 1);
-    scaleInto(first, samples[site], sites[site], where);
-    scaleInto(second, samples[partner], sites[partner], where);
+    const scale = scaleInto(first, samples[site], sites[site], where);
+    const partnerScale = scaleInto(second, samples[partner], sites[partner], where);
     analyser.transform(first, second, re, im);
-    storeUnit(job, 0, site, epochIndex, phasors, where);
-    if (partner !== site) storeUnit(job, 1, partner, epochIndex, phasors, where);
+    store(job, { which: 0, site, scale }, epochIndex, phasors, where);
+    if (partner === site) continue;
+    store(job, { which: 1, site: partner, scale: partnerScale }, epochIndex, phasors, where);
   }
 }
 
-/** Scales a signal to a largest value of 1, so that no amplitude overflows or vanishes. */
-function scaleInto(out: Float64Array, signal: Float64Array, site: string, where: string): void {
+/**
+ * Scales a signal to a largest value of 1, so that no amplitude overflows or vanishes; returns that
+ * value.
+ */
+function scaleInto(out: Float64Array, signal: Float64Array, site: string, where: string): number {
   let most = 0;
   for (let i = 0; i < signal.length; i++) {
     const size = Math.abs(signal[i]);
@@ -92,12 +108,19 @@ function scaleInto(out: Float64Array, signal: Float64Array, site: string, where:
   }
   if (most === 0) throw flatError(site, where);
   for (let i = 0; i < signal.length; i++) out[i] = signal[i] / most;
+  return most;
 }
 
-function storeUnit(
+/** One signal of the analyser's two: whose it is, and what it was divided by. */
+interface Transformed {
+  which: 0 | 1;
+  site: number;
+  scale: number;
+}
+
+function store(
   job: PhaseJob,
-  which: 0 | 1,
-  site: number,
+  { which, site, scale }: Transformed,
   epochIndex: number,
   phasors: Float32Array,
   where: string,
@@ -117,7 +140,17 @@ function storeUnit(
         `${job.sites[site]} has no signal at ${Number(job.frequenciesHz[f].toPrecision(4))} Hz in ${where}, so it has no phase. Leave the site or the epoch out.`,
       );
     }
-    phasors[real + i] = x / size;
-    phasors[imaginary + i] = y / size;
+    const length = job.keepsAmplitude
+      ? amplitudeOf((size / analyser.kernelSums[f]) * scale, job.sites[site], where)
+      : 1;
+    phasors[real + i] = (x / size) * length;
+    phasors[imaginary + i] = (y / size) * length;
   }
+}
+
+function amplitudeOf(amplitudeUv: number, site: string, where: string): number {
+  if (amplitudeUv > leastAmplitude && amplitudeUv < mostAmplitude) return amplitudeUv;
+  throw new RangeError(
+    `${site} has an amplitude of ${amplitudeUv.toPrecision(2)} µV in ${where}, beyond what a measure weighted by amplitude can hold. Mend the recording's physical range, or choose a measure of phase alone.`,
+  );
 }

@@ -1,6 +1,7 @@
 import { PlanError } from '../errors';
 import type { Plan } from '../plan';
 import type { RecordingFacts } from '../types';
+import { leastSitesForLaplacian, sitePoints } from './laplacian';
 import { listed, planRecordings } from './recordings';
 
 /** Refuses references that leave a site flat, or two sites each other's mirror image. */
@@ -20,6 +21,18 @@ export function refuseEmptyReference(plan: Plan): void {
       `${site} is the reference and analysed too, and would be flat: leave it out of the sites, or add sites to the reference.`,
     );
   }
+}
+
+/** Refuses the surface Laplacian of too few sites, or of sites that stand nowhere. */
+export function refuseLaplacianWithoutPlaces(plan: Plan, recordings: RecordingFacts[]): void {
+  if (plan.epoch.reference.kind !== 'laplacian') return;
+  if (plan.sites.length < leastSitesForLaplacian) {
+    throw new PlanError(
+      'epoch.reference',
+      `The surface Laplacian of ${plan.sites.length} sites means nothing: take at least ${leastSitesForLaplacian} sites, or another reference.`,
+    );
+  }
+  for (const recording of planRecordings(plan, recordings)) sitePoints(plan, recording);
 }
 
 /** Refuses limits in microvolts for sites that are not recorded in volts. */

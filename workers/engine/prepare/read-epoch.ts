@@ -5,6 +5,7 @@ import type { EdfSignal } from '../read/edf-signals';
 import type { ByteSource } from '../read/byte-source';
 import type { Axes, Epoch, RecordingFacts } from '../types';
 import { windowSamples } from './grid';
+import { applyLaplacian, laplacianMatrix, sitePoints } from './laplacian';
 import { channelIndices, recordingOf, sitesRead } from './recordings';
 import { detrend, rereference } from './signal';
 
@@ -15,6 +16,8 @@ export interface RecordingSource {
 }
 
 interface OpenRecording {
+  /** Of the surface Laplacian, where the plan asks for it. */
+  laplacian: Float64Array | null;
   name: string;
   file: EdfFile;
   signals: EdfSignal[];
@@ -52,14 +55,14 @@ export function epochReader(plan: Plan, axes: Axes, recordings: RecordingSource[
     guard,
     windowCount: count,
     async read(epoch) {
-      const { name, file, signals } = await open(epoch.recording);
+      const { name, file, signals, laplacian } = await open(epoch.recording);
       const segment = file.segments[epoch.segment];
       if (!segment) {
         throw new RangeError(`${name} has no segment ${epoch.segment + 1}: read its facts again.`);
       }
       const start = epoch.sample + first - guard;
       const samples = await file.readSignals(signals, segment, start, count + 2 * guard);
-      return prepared(plan, samples);
+      return prepared(plan, samples, laplacian);
     },
     describe: (epoch) =>
       `the epoch at ${Number(epoch.onsetS.toFixed(3))} s of ${recordingOf(plan, facts, epoch.recording).name}`,
@@ -88,13 +91,20 @@ async function openRecording(
     }
     return signal;
   });
-  return { name: facts.name, file, signals };
+  const laplacian =
+    plan.epoch.reference.kind === 'laplacian' ? laplacianMatrix(sitePoints(plan, facts)) : null;
+  return { name: facts.name, file, signals, laplacian };
 }
 
 /** References and detrends the samples of `sitesRead`, and returns those of the analysed sites. */
-function prepared(plan: Plan, samples: Float64Array[]): Float64Array[] {
+function prepared(
+  plan: Plan,
+  samples: Float64Array[],
+  laplacian: Float64Array | null,
+): Float64Array[] {
   const { reference } = plan.epoch;
-  const analysed = samples.slice(0, plan.sites.length);
+  const recorded = samples.slice(0, plan.sites.length);
+  const analysed = laplacian ? applyLaplacian(recorded, laplacian) : recorded;
   if (reference.kind === 'average') rereference(analysed, analysed);
   if (reference.kind === 'channels') {
     const read = sitesRead(plan);

@@ -17,7 +17,7 @@ export async function screenEpochs(
 ): Promise<LostEpoch[]> {
   const { aboveUv, flatBelowUv } = plan.epoch.reject;
   if (aboveUv === null && flatBelowUv === null) return [];
-  const reader = epochReader(plan, axes, recordings);
+  const reader = epochReader(inMicrovolts(plan), axes, recordings);
   const lost: LostEpoch[] = [];
   for (const epoch of epochs) {
     const samples = await reader.read(epoch);
@@ -34,6 +34,12 @@ export async function screenEpochs(
     });
   }
   return lost;
+}
+
+/** Limits in uV are held against potentials: a surface Laplacian has another unit. */
+function inMicrovolts(plan: Plan): Plan {
+  if (plan.epoch.reference.kind !== 'laplacian') return plan;
+  return { ...plan, epoch: { ...plan.epoch, reference: { kind: 'recorded' } } };
 }
 
 function refuseFlat(sites: string[], samples: Float64Array[], where: string): void {

@@ -190,7 +190,8 @@ interface NullSummaryTable {
   id: Generated<string>;
   teamId: string;
   runId: string;
-  kind: 'max-statistic' | 'cluster-mass';
+  /** The correction whose maxima these are. */
+  kind: string;
   surrogates: number[];
   mean: number;
   sd: number;

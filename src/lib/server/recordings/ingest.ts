@@ -15,7 +15,7 @@ import type { Member } from '../access';
 import type { Database, Db } from '../database';
 import type { Storage } from '../storage';
 import { storedBytes } from './blanked-stream';
-import { openFileSource } from './file-source';
+import { openFileSource } from '$workers/file-source';
 import { IngestError } from './ingest-error';
 import { participantWith } from './participant';
 import { insertChannels, insertEvents } from './rows';

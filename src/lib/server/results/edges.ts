@@ -1,3 +1,4 @@
+import { byClaim } from '$lib/model/edge-table';
 import type { ResultCluster, ResultEdge } from '$lib/model/result';
 import type { Member } from '../access';
 import type { Db } from '../database';
@@ -40,9 +41,7 @@ export async function runEdges(
     .where('edge.runId', '=', runId)
     .where('edge.correction', '=', correction)
     .execute();
-  return rows.sort(
-    (one, other) => one.adjustedP - other.adjustedP || Math.abs(other.z) - Math.abs(one.z),
-  );
+  return rows.sort(byClaim);
 }
 
 /** The run's clusters without their points, the largest mass first. */

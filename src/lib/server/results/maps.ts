@@ -1,5 +1,5 @@
 import { error } from '@sveltejs/kit';
-import { parseNpy, type NpyArray } from '$lib/model/npy';
+import { parseNpy, type NpyArray } from '$workers/engine/npy';
 import type { Member } from '../access';
 import type { Db } from '../database';
 import type { Storage } from '../storage';

@@ -1,7 +1,7 @@
 import { createHash } from 'node:crypto';
 import { Readable } from 'node:stream';
 import { error } from '@sveltejs/kit';
-import { bytesPerElement, npyHeader, npyHeaderLimit, parseNpyHeader } from '$lib/model/npy';
+import { bytesPerElement, npyHeader, npyHeaderLimit, parseNpyHeader } from '$workers/engine/npy';
 import type { Db } from '../database';
 import type { Storage } from '../storage';
 import { ResultRefused } from './refused';

@@ -1,8 +1,8 @@
 import { createHash } from 'node:crypto';
 import { Readable } from 'node:stream';
 import type { Axes } from '$engine';
-import { npyElements, npyHeaderLimit, parseNpyHeader } from '$lib/model/npy';
-import type { NpyArray, NpyHeader } from '$lib/model/npy';
+import { npyElements, npyHeaderLimit, parseNpyHeader } from '$workers/engine/npy';
+import type { NpyArray, NpyHeader } from '$workers/engine/npy';
 import { mapShape, sentMaps, type SentMapName } from '$lib/model/run-maps';
 import type { Storage } from '../storage';
 import { ResultRefused } from './refused';

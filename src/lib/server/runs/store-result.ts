@@ -2,7 +2,7 @@ import { createHash } from 'node:crypto';
 import { Readable } from 'node:stream';
 import { conclude, type ClaimMaps, type Outcome, type RunMaps } from '$engine';
 import type { RunSummary } from '$lib/model/run';
-import { npyParts, type NpyArray, type NpyHeader } from '$lib/model/npy';
+import { npyParts, type NpyArray, type NpyHeader } from '$workers/engine/npy';
 import { mapField, mapShape, sentMapNames, sentMaps, type SentMapName } from '$lib/model/run-maps';
 import type { Member } from '../access';
 import type { Db } from '../database';
@@ -130,6 +130,9 @@ async function readMaps(
     lower: await read<Uint32Array>('lower'),
     maxStatistic: Float32Array.from(summary.maxStatistic),
     maxClusterMass: Float32Array.from(summary.clusterMass),
+    parts: Object.fromEntries(
+      Object.entries(summary.parts ?? {}).map(([id, list]) => [id, Float32Array.from(list)]),
+    ),
   };
   return { maps, sha256s };
 }

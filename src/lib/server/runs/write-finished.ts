@@ -1,6 +1,7 @@
 import type { Insertable } from 'kysely';
-import type { Cluster, Edge, Outcome } from '$engine';
+import { planParts, type Cluster, type Edge, type Outcome } from '$engine';
 import type { RunSummary } from '$lib/model/run';
+import { resultEdgeOf } from '$lib/model/result-edge';
 import type { RunFacts } from '$lib/model/run-facts';
 import type { Member } from '../access';
 import { record } from '../audit';
@@ -112,23 +113,31 @@ function factsOf({ expectation, summary, outcome, locked }: Finished): RunFacts 
 
 function nullSummaries(
   owner: Owner,
-  { summary, outcome }: Finished,
+  { summary, outcome, locked }: Finished,
 ): Insertable<Database['nullSummary']>[] {
   const critical = (correction: string): number | null =>
     outcome.corrections.find(({ id }) => id === correction)?.criticalValue ?? null;
   return [
     {
       ...owner,
-      kind: 'max-statistic' as const,
+      kind: 'max-statistic',
       ...moments(summary.maxStatistic),
       criticalValue: critical('max-statistic'),
     },
     {
       ...owner,
-      kind: 'cluster-mass' as const,
+      kind: 'cluster-mass',
       ...moments(summary.clusterMass),
       criticalValue: critical('cluster-mass'),
     },
+    ...planParts(locked.plan.test)
+      .filter(([, part]) => part.isMaxima)
+      .map(([id]) => ({
+        ...owner,
+        kind: id,
+        ...moments(summary.parts?.[id] ?? []),
+        criticalValue: critical(id),
+      })),
   ];
 }
 
@@ -165,36 +174,21 @@ function edgeRows(
   { outcome, expectation }: Finished,
   clusterIds: string[],
 ): Insertable<Database['edge']>[] {
-  const { sites, pairs, frequenciesHz, timesS } = expectation.axes;
+  const { axes } = expectation;
   return outcome.corrections.flatMap(({ edges }) =>
-    edges.map((edge: Edge) => ({
-      ...owner,
-      correction: edge.correction,
-      pairIndex: edge.pair,
-      siteJ: sites[pairs[edge.pair]![0]]!,
-      siteK: sites[pairs[edge.pair]![1]]!,
-      fromHz: edge.fromHz,
-      toHz: edge.toHz,
-      fromS: edge.fromS,
-      toS: edge.toS,
-      peakHz: frequenciesHz[Math.floor(edge.peakPoint / timesS.length)]!,
-      peakS: timesS[edge.peakPoint % timesS.length]!,
-      peakPoint: edge.peakPoint,
-      points: edge.points,
-      observedA: edge.observedA,
-      observedB: edge.observedB,
-      difference: edge.difference,
-      z: edge.z,
-      p: edge.p,
-      pLow: edge.pInterval[0],
-      pHigh: edge.pInterval[1],
-      adjustedP: edge.adjustedP,
-      adjustedPLow: edge.adjustedPInterval?.[0] ?? null,
-      adjustedPHigh: edge.adjustedPInterval?.[1] ?? null,
-      lagARad: edge.lagARad,
-      lagBRad: edge.lagBRad,
-      clusterId: edge.cluster === null ? null : clusterIds[edge.cluster]!,
-    })),
+    edges.map((edge: Edge) => {
+      const { pair, cluster, ...values } = resultEdgeOf(edge, axes);
+      const [j, k] = axes.pairs[pair]!;
+      return {
+        ...owner,
+        ...values,
+        correction: edge.correction,
+        pairIndex: pair,
+        siteJ: axes.sites[j]!,
+        siteK: axes.sites[k]!,
+        clusterId: cluster === null ? null : clusterIds[cluster - 1]!,
+      };
+    }),
   );
 }
 

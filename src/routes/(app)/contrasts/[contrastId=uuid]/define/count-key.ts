@@ -8,7 +8,16 @@ export function countKey(plan: Plan): string {
 
 /** Everything that decides how long a run takes on one machine. */
 export function timeKey(plan: Plan, counts: { a: number; b: number }, pairs: number): string {
-  const { epoch, sites, phase, times, measure, test } = plan;
-  const size = [counts, pairs, sites.length, test.permutations, test.tail];
-  return JSON.stringify([size, epoch.fromS, epoch.toS, phase, times, measure, plan.null]);
+  const { epoch, sites, phase, times, measure, measureSettings, test } = plan;
+  const size = [counts, pairs, sites.length, test.permutations, test.tail, test.corrections];
+  return JSON.stringify([
+    size,
+    epoch.fromS,
+    epoch.toS,
+    phase,
+    times,
+    measure,
+    measureSettings,
+    plan.null,
+  ]);
 }

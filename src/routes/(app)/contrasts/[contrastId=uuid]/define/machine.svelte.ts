@@ -2,9 +2,9 @@ import { axesOf, planEpochs, type Consequences, type LostEpoch, type Plan } from
 import type { StudyRecording } from '$lib/model/study-recording';
 import { createEngineWorker } from '$lib/run/engine-worker';
 import { asRunError, RunError } from '$lib/run/errors';
-import { poolSize, WorkerPool } from '$lib/run/pool';
+import { poolSize, WorkerPool } from '$workers/run/pool';
 import { fetchRecording, isKept } from '$lib/run/recording-cache';
-import { screen } from '$lib/run/steps';
+import { screen } from '$workers/run/steps';
 import { countKey, timeKey } from './count-key';
 
 const quietMs = 900;

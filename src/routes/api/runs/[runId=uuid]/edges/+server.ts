@@ -1,14 +1,9 @@
 import { error, json } from '@sveltejs/kit';
 import { z } from 'zod';
+import { edgesTsv } from '$lib/model/edge-table';
 import { allow } from '$lib/server/access';
 import { db } from '$lib/server/database';
-import {
-  edgesJson,
-  edgesTsv,
-  findFinishedRun,
-  plannedCorrection,
-  runEdges,
-} from '$lib/server/results';
+import { edgesJson, findFinishedRun, plannedCorrection, runEdges } from '$lib/server/results';
 import type { RequestHandler } from './$types';
 
 const querySchema = z.object({
@@ -38,7 +33,7 @@ export const GET: RequestHandler = async (event) => {
   if (query.data.format === 'json') {
     return json(edgesJson(found, correction, edges.length), { headers });
   }
-  return new Response(edgesTsv(edges, found.facts.axes), {
+  return new Response(edgesTsv(edges, found.facts.axes, found.plan.body.measure), {
     headers: { ...headers, 'content-type': 'text/tab-separated-values; charset=utf-8' },
   });
 };

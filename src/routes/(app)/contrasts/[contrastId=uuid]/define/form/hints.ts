@@ -6,7 +6,7 @@ export const hints = {
   detrend:
     'What is taken out of each epoch before its phases: its mean, or its straight line, which also removes slow drift.',
   reference:
-    'Phases depend on the reference. A shared reference makes sites look alike; the mean of all analysed sites is fairest with many well-spread sites.',
+    'Phases depend on the reference. A shared reference makes sites look alike; the mean of all analysed sites is fairest with many well-spread sites; the surface Laplacian needs no reference and damps what spreads far, but needs positions and dense sites.',
   aboveUv:
     'An epoch is left out when any analysed site swings more than this within the window, from lowest to highest sample. Empty: no limit.',
   flatBelowUv:
@@ -14,8 +14,6 @@ export const hints = {
   sites: 'Sites marked bad in a recording are left out unless you choose them.',
   pairs: 'Fewer pairs are fewer tests, so smaller differences can survive the correction.',
   spacing: 'Log spacing puts the same number of steps into each doubling of frequency.',
-  cycles:
-    'Cycles of the wavelet at the lowest and the highest frequency. More cycles tell frequencies apart better and moments in time worse.',
   times:
     'Moments at which synchrony is measured, in seconds from the event. Closer than the kernel is wide, they are not separate findings.',
   tail: 'Two-sided finds differences either way; a one-sided test must be chosen before the data are seen.',

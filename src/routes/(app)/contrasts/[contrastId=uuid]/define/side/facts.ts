@@ -1,4 +1,4 @@
-import type { Consequences, LossReason, LostEpoch, Plan } from '$engine';
+import { measureOf, type Consequences, type LossReason, type LostEpoch, type Plan } from '$engine';
 import { formatBytes, formatCount, formatNumber, formatP, formatSeconds } from '$lib/model/format';
 
 export interface Fact {
@@ -12,11 +12,11 @@ const span = (low: number, high: number, digits: number) =>
     ? formatNumber(low, digits)
     : `${formatNumber(low, digits)} to ${formatNumber(high, digits)}`;
 
-function chanceFacts({ epochs, chance }: Consequences): Fact[] {
-  const hint =
-    'With no synchrony at all, ISPC is near √(π / 4N): the fewer epochs N, the higher. It cannot be read as synchrony below that.';
+function chanceFacts({ epochs, chance }: Consequences, measure: string): Fact[] {
+  if (chance.a === null && chance.b === null) return [];
+  const hint = `With no synchrony at all, ${measure} is near this. It cannot be read as synchrony below that.`;
   const of = (condition: 'a' | 'b') => ({
-    name: `ISPC by chance, ${condition.toUpperCase()} at ${formatCount(epochs[condition], 'epoch')}`,
+    name: `${measure} by chance, ${condition.toUpperCase()} at ${formatCount(epochs[condition], 'epoch')}`,
     value: formatNumber(chance[condition], 3),
     hint,
   });
@@ -38,6 +38,7 @@ export function timeFacts(seconds: number | null, workers: number): Fact[] {
 
 /** What a plan can show, in the order of the panel. */
 export function testFacts(facts: Consequences): Fact[] {
+  const measure = measureOf(facts.measure).shortName;
   const widths = facts.kernels.map((kernel) => kernel.timeFwhmS);
   const bands = facts.kernels.map((kernel) => kernel.frequencyFwhmHz);
   const { z, difference } = facts.smallestDifference;
@@ -52,11 +53,11 @@ export function testFacts(facts: Consequences): Fact[] {
       value: formatP(facts.smallestP),
       hint: 'Under the correction that carries the claim: one in the permutations plus one, and no less than one in the different ways of shuffling.',
     },
-    ...chanceFacts(facts),
+    ...chanceFacts(facts, measure),
     {
       name: `smallest difference at z = ${formatNumber(z, 1)}`,
       value: difference === null ? '–' : `about ${formatNumber(difference, 2)}`,
-      hint: 'The difference A − B of ISPC that stands this far out of the null where neither condition synchronises.',
+      hint: `The difference A − B of ${measure} that stands this far out of the null where neither condition synchronises.`,
     },
     {
       name: 'kernel width in time',
