@@ -7,6 +7,7 @@ import {
   epochBlocks,
   mergeBlocks,
   type Axes,
+  type MeasureId,
   type NullId,
   type Outcome,
   type Plan,
@@ -21,6 +22,7 @@ export type PhaseOf = (site: number, epoch: number, frequency: number, sample: n
 
 export interface TinyOptions {
   nullId?: NullId;
+  measureId?: MeasureId;
   siteCount?: number;
   epochsA?: number;
   epochsB?: number;
@@ -49,6 +51,7 @@ export function tinyRun(phaseOf: PhaseOf, options: TinyOptions = {}): TinyRun {
   const base = samplePlan();
   const plan = samplePlan({
     sites,
+    measure: options.measureId ?? 'ispc',
     null: options.nullId ?? 'labels',
     ...(options.nullId === 'labels-within-blocks'
       ? { nullSettings: { by: 'epochs', size: 8 } }

@@ -62,12 +62,12 @@ export function testFacts(facts: Consequences): Fact[] {
     {
       name: 'kernel width in time',
       value: `${span(Math.min(...widths), Math.max(...widths), 2)} s`,
-      hint: 'Full width at half maximum, 2 √(2 ln 2) s: moments closer than this are not separate.',
+      hint: 'Full width at half maximum of the kernel: moments closer than this are not separate.',
     },
     {
       name: 'kernel width in frequency',
       value: `${span(Math.min(...bands), Math.max(...bands), 1)} Hz`,
-      hint: 'Full width at half maximum, √(2 ln 2) / (π s): frequencies closer than this are not separate.',
+      hint: 'Full width at half maximum of its spectrum: frequencies closer than this are not separate.',
     },
     {
       name: 'guard on each side',
