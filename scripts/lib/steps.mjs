@@ -60,7 +60,15 @@ export function ensureBuild() {
   const wanted = sourceHash();
   if (existsSync(stamp) && readFileSync(stamp, 'utf8') === wanted) return;
   console.log('building');
-  runTool('vite', ['build', '--logLevel', 'warn']);
+  // What the bundler says of packages' own code fills screens; it is shown when the build fails.
+  const built = spawnSync(path.join(root, 'node_modules', '.bin', 'vite'), ['build'], {
+    cwd: root,
+    encoding: 'utf8',
+    maxBuffer: 64 * 1024 * 1024,
+  });
+  if (built.status !== 0) {
+    throw new Error(`vite build failed:\n${built.stdout}\n${built.stderr}`);
+  }
   writeFileSync(stamp, wanted);
 }
 

@@ -60,7 +60,7 @@ const wholeDraftSchema = z.strictObject({
   phase: phaseDraftSchema,
   times: z.strictObject({ fromS: typed, toS: typed, stepS: typed }),
   measure: z.enum(measureIds),
-  /** What measures, nulls and phase methods ask for besides, as `id.key`; absent: as they begin. */
+  /** What measures and nulls ask for besides, as `id.key`; absent: as they begin. */
   settings: z.record(z.string().max(100), typed).default({}),
   null: z.enum(nullIds),
   test: z.strictObject({

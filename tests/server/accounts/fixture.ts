@@ -58,6 +58,18 @@ export function tokenIn(mail: KeptMail | undefined): string {
  */
 export async function atOnce<T>(work: () => Promise<T>): Promise<T[]> {
   const times = Array.from({ length: 8 }, (_, i) => i);
-  await Promise.all(times.map(() => sql`select pg_sleep(0.05)`.execute(db)));
+  let held = 0;
+  let release = () => {};
+  const allHeld = new Promise<void>((resolve) => (release = resolve));
+  await Promise.all(
+    times.map(() =>
+      db.connection().execute(async (connection) => {
+        await sql`select 1`.execute(connection);
+        held += 1;
+        if (held === times.length) release();
+        await allHeld;
+      }),
+    ),
+  );
   return Promise.all(times.map(() => work()));
 }
