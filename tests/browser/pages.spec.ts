@@ -151,7 +151,9 @@ for (const { width, height, theme } of views) {
 }
 
 async function withTheme(page: Page, theme: 'light' | 'dark', baseURL: string | undefined) {
-  await page.context().addCookies([{ name: 'theme', value: theme, url: baseURL ?? '' }]);
+  await page.context().addCookies([{ name: 'nullwright_theme', value: theme, url: baseURL ?? '' }]);
+  await page.goto('/methods');
+  await expect(page.locator('html')).toHaveAttribute('data-theme', theme);
 }
 
 function listen(page: Page): string[] {
