@@ -22,6 +22,7 @@ interface Demo {
   recording: string;
   finished: string;
   ready: string;
+  draft: string;
 }
 
 const pages: PageToSee[] = [
@@ -53,6 +54,11 @@ const pages: PageToSee[] = [
     name: 'recording',
     path: (demo) => `/studies/${demo.study}/recordings/${demo.recording}`,
     heading: /P01 tapping/,
+  },
+  {
+    name: 'define, a draft',
+    path: (demo) => `/contrasts/${demo.draft}/define`,
+    heading: /^Draft/,
   },
   {
     name: 'define, locked',
@@ -99,7 +105,19 @@ async function findDemo(page: Page): Promise<Demo> {
   const ready = await idFrom(page, /^Every pair, P01/, /contrasts\/([0-9a-f-]{36})/);
   await page.goto(`/studies/${study}/recordings`);
   const recording = await idFrom(page, /^P01 tapping/, /recordings\/([0-9a-f-]{36})/);
-  return { study, recording, finished, ready };
+  return { study, recording, finished, ready, draft: await makeDraft(page, study) };
+}
+
+/** A draft whose participant is chosen, so that the whole form stands. */
+async function makeDraft(page: Page, study: string): Promise<string> {
+  await page.goto(`/studies/${study}`);
+  await page.getByRole('link', { name: 'New contrast' }).first().click();
+  await page.getByLabel('Name', { exact: true }).fill(`Draft ${Date.now()}`);
+  await page.getByLabel('Question in words').fill('Does every control of the form stand?');
+  await page.getByRole('button', { name: 'Create and define' }).click();
+  await page.getByRole('combobox', { name: 'participant' }).selectOption({ index: 1 });
+  await expect(page.getByText(/^Saved/)).toBeVisible();
+  return /contrasts\/([0-9a-f-]{36})/.exec(page.url())?.[1] ?? '';
 }
 
 const views = [
@@ -135,7 +153,7 @@ for (const { width, height, theme } of views) {
     test('pages for the signed-out', async ({ page, baseURL }) => {
       await withTheme(page, theme, baseURL);
       const errors = listen(page);
-      const nothing = { study: '', recording: '', finished: '', ready: '' };
+      const nothing = { study: '', recording: '', finished: '', ready: '', draft: '' };
       for (const each of pages.filter((one) => one.signedOut))
         await see(page, each, nothing, errors);
     });
