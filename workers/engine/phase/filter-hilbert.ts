@@ -58,6 +58,7 @@ export const filterHilbert: PhaseMethod<Settings, typeof schema> = {
     'A band-pass filter around each frequency that delays nothing, then the analytic signal: you choose the band, and its phase is that of everything in it.',
   formula:
     'y = h ∗ x, h: sinc band-pass f ± Δ under a Hamming taper, 2·round(1.5 fₛ / (f − Δ)) + 1 taps; z = y + i H(y)',
+  // Sources from memory.
   source: 'Gabor 1946; windowed-sinc design after Oppenheim and Schafer 1989',
   schema,
   fields: [

@@ -68,6 +68,7 @@ export const morlet: PhaseMethod<Settings, typeof schema> = {
   sentence:
     'A sine wave inside a Gaussian bell: more cycles tell frequencies apart better and moments in time worse.',
   formula: 'w(t) = exp(2πift) · exp(−t² / 2s²), s = n / 2πf, |t| ≤ 4s',
+  // Sources from memory.
   source: 'Tallon-Baudry et al. 1996; widths after Cohen 2019',
   schema,
   fields: [

@@ -63,6 +63,7 @@ export const shortTimeFourier: PhaseMethod<Settings, typeof schema> = {
   sentence:
     'A sine wave inside a Hann bell of one length at all frequencies: time and frequency are equally sharp everywhere.',
   formula: 'w(t) = exp(2πift) · cos²(πt / T), |t| ≤ T / 2',
+  // Sources from memory.
   source: 'Gabor 1946; widths of the taper after Harris 1978',
   schema,
   fields: [
