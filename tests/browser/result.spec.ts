@@ -28,7 +28,7 @@ async function finishedContrast(): Promise<string> {
 
 async function open(page: Page): Promise<void> {
   await signInAs(page, 'researcher');
-  await page.goto(`/contrasts/${await finishedContrast()}/result`);
+  await page.goto(`/contrasts/${await finishedContrast()}/result?plan=1`);
   await page.waitForLoadState('networkidle');
 }
 
@@ -99,6 +99,6 @@ test('the roses state the ISPC and the lag that the chosen edge has in the table
   const roses = page.locator('section[aria-labelledby="phases"] figcaption');
   // Site pair, band, time, then ISPC A and B.
   const ofTable = (column: number) => row.locator('td, th').nth(column).innerText();
-  await expect(roses.nth(0)).toContainText(`: ${(await ofTable(3)).trim()}`);
-  await expect(roses.nth(1)).toContainText(`: ${(await ofTable(4)).trim()}`);
+  await expect(roses.nth(0)).toContainText(`: ISPC ${(await ofTable(3)).trim()}`);
+  await expect(roses.nth(1)).toContainText(`: ISPC ${(await ofTable(4)).trim()}`);
 });
